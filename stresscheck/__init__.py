@@ -1,0 +1,2 @@
+"""stresscheck."""
+__version__ = "0.1.0"

@@ -1,0 +1,222 @@
+"""Design (in one state) → Network: names become numbers, parts become branches."""
+
+from __future__ import annotations
+
+import math
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+from stresscheck.circuit.axes import Axes, Axis
+from stresscheck.circuit.curves import LossCurve
+from stresscheck.circuit.joints import Joints
+from stresscheck.circuit.laws import TAU, CapacitorLaw, InductorLaw, Law, ResistorLaw
+from stresscheck.circuit.network import Branch, Coupling, Line, Network, Source, Transformer
+
+if TYPE_CHECKING:
+    from stresscheck.design.model import Design
+
+LEVEL_SCALE = {"peak": 1.0, "rms": math.sqrt(2.0), "peak_to_peak": 0.5}
+
+
+def build(design: Design) -> Network:
+    """Number the nodes, make every present part a set of branches, sort drives into spectral lines.
+
+    Opened parts are left out, shorted ones join their nodes. An island without a reference gets one of its nodes
+    as reference: no current flows through that, and stresses of parts don't depend on the choice.
+    Raises CheckError where a loss isn't stated over the whole band of a drive.
+    """
+    return _Builder(design).network()
+
+
+class _Builder:
+    """Collects axes and branches in reading order; lives only inside `build`."""
+
+    def __init__(self, design: Design) -> None:
+        self.design = design
+        self.absent = design.opened | design.shorted
+        self.joints = Joints(design)
+        self.axes: list[Axis] = []
+        self.branches: list[Branch] = []
+
+    def network(self) -> Network:
+        for name, capacitor in self._present("capacitor"):
+            self._capacitor(name, capacitor)
+        for name, inductor in self._present("inductor"):
+            self._inductor(name, inductor)
+        for name, resistor in self._present("resistor"):
+            self._resistor(name, resistor)
+        couplings = self._couplings()
+        sources, lines = self._drives()
+        transformers = tuple(
+            Transformer(
+                name,
+                self.joints.pair(part.primary),
+                self.joints.pair(part.secondary),
+                (float(part.turns[0]), float(part.turns[1])),
+            )
+            for name, part in self._present("transformer")
+        )
+        network = Network(
+            Axes(tuple(self.axes)),
+            self.joints.names,
+            tuple(self.branches),
+            couplings,
+            transformers,
+            sources,
+            lines,
+        )
+        for line in lines:
+            axis = network.axes.items[line.frequency_axis]
+            for branch in self.branches:
+                branch.law.check_band(axis.low, axis.high)
+        return network
+
+    def _present(self, kind: str) -> list[tuple[str, Any]]:
+        table = getattr(self.design, kind)
+        return [(name, part) for name, part in table.items() if name not in self.absent]
+
+    def _axis(self, path: str, span: Any) -> int:
+        self.axes.append(Axis(path, float(span.low), float(span.nominal), float(span.high)))
+        return len(self.axes) - 1
+
+    def _branch(self, part: str, role: str, nodes: tuple[int, int], law: Law, fixed: float) -> None:
+        self.branches.append(Branch(part, role, nodes[0], nodes[1], law, None, fixed))
+
+    def _capacitor(self, name: str, part: Any) -> None:
+        first, second = self.joints.pair(part.between)
+        series, parallel = part.in_series or 1, part.in_parallel or 1
+        scale = parallel / series
+        factor = 1.0 / part.q if part.q is not None else part.dissipation_factor
+        law = CapacitorLaw(
+            _curve(f"dissipation_factor of {name}", factor), _curve(f"esr of {name}", part.esr), scale
+        )
+        axis = self._axis(f"capacitor.{name}.value", part.span())
+        inductance = part.series_inductance
+        if inductance is None and part.self_resonance is not None:
+            inductance = 1.0 / ((TAU * part.self_resonance) ** 2 * self.axes[axis].nominal)
+        inner = second
+        if inductance:
+            inner = self.joints.inner(f"{name} (inside)")
+            coil = InductorLaw(_curve("", None))
+            self._branch(name, "series_inductance", (inner, second), coil, float(inductance) / scale)
+        self.branches.append(Branch(name, "main", first, inner, law, axis))
+        if part.leakage_resistance is not None:
+            leak = float(part.leakage_resistance) / scale
+            self._branch(name, "leakage", (first, second), ResistorLaw(), leak)
+
+    def _inductor(self, name: str, part: Any) -> None:
+        first, second = self.joints.pair(part.between)
+        kappa = TAU * part.q_at / part.q if part.q is not None else 0.0
+        law = InductorLaw(_curve(f"resistance of {name}", part.resistance), kappa)
+        axis = self._axis(f"inductor.{name}.value", part.span())
+        self.branches.append(Branch(name, "main", first, second, law, axis))
+        capacitance = part.parallel_capacitance
+        if capacitance is None and part.self_resonance is not None:
+            capacitance = 1.0 / ((TAU * part.self_resonance) ** 2 * self.axes[axis].nominal)
+        if capacitance:
+            lossless = CapacitorLaw(_curve("", None), _curve("", None))
+            self._branch(name, "parallel_capacitance", (first, second), lossless, float(capacitance))
+        if part.parallel_resistance is not None:
+            self._branch(
+                name, "core_loss", (first, second), ResistorLaw(), float(part.parallel_resistance)
+            )
+
+    def _resistor(self, name: str, part: Any) -> None:
+        first, second = self.joints.pair(part.between)
+        scale = (part.in_series or 1) / (part.in_parallel or 1)
+        inner = second
+        if part.series_inductance is not None:
+            inner = self.joints.inner(f"{name} (inside)")
+            coil = InductorLaw(_curve("", None))
+            self._branch(
+                name, "series_inductance", (inner, second), coil, float(part.series_inductance) * scale
+            )
+        axis = self._axis(f"resistor.{name}.value", part.span())
+        self.branches.append(Branch(name, "main", first, inner, ResistorLaw(scale), axis))
+
+    def _couplings(self) -> tuple[Coupling, ...]:
+        place = {b.part: i for i, b in enumerate(self.branches) if b.role == "main"}
+        found = []
+        for name, part in self.design.coupling.items():
+            if any(coil in self.absent for coil in part.of):
+                continue
+            axis = self._axis(f"coupling.{name}.factor", part.span())
+            found.append(Coupling(name, place[part.of[0]], place[part.of[1]], axis))
+        return tuple(found)
+
+    def _drives(self) -> tuple[tuple[Source, ...], tuple[Line, ...]]:
+        present = self._present("drive")
+        bands = [drive.band() for _, drive in present]
+        line_of, members, axes = self._lines(present, bands)
+        sources = []
+        for index, (name, drive) in enumerate(present):
+            sources.append(self._source(index, name, drive, line_of[index]))
+        groups = _groups([bands[group[0]] for group in members])
+        lines = tuple(
+            Line(axes[number], tuple(group), groups[number]) for number, group in enumerate(members)
+        )
+        return tuple(sources), lines
+
+    def _lines(
+        self, present: list[tuple[str, Any]], bands: list[Any]
+    ) -> tuple[list[int], list[list[int]], list[int]]:
+        """Drives with stated phase and the same band share a line; all others get one each."""
+        line_of: list[int] = []
+        members: list[list[int]] = []
+        axes: list[int] = []
+        shared: dict[tuple[float, float], int] = {}
+        for index, (name, drive) in enumerate(present):
+            key = (bands[index].low, bands[index].high)
+            if drive.phase is not None and key in shared:
+                line_of.append(shared[key])
+                members[shared[key]].append(index)
+                continue
+            axes.append(self._axis(f"drive.{name}.frequency", bands[index]))
+            members.append([index])
+            line_of.append(len(members) - 1)
+            if drive.phase is not None:
+                shared[key] = len(members) - 1
+        return line_of, members, axes
+
+    def _source(self, index: int, name: str, drive: Any, line: int) -> Source:
+        first, second = self.joints.pair(drive.between)
+        basis, span = drive.level_span()
+        level = self._axis(f"drive.{name}.{basis}", span)
+        ohm = float(drive.source_resistance or 0.0)
+        kind = drive.source
+        branch = None
+        if kind == "voltage":
+            branch = len(self.branches)
+            self.branches.append(
+                Branch(name, "source", first, second, ResistorLaw(), None, ohm, drive=index)
+            )
+        elif drive.source_resistance is not None:
+            self._branch(name, "source", (first, second), ResistorLaw(), ohm)
+        known = basis if basis in ("available_power", "delivered_power") else "peak"
+        return Source(
+            name, kind, known, first, second, branch, ohm, level, LEVEL_SCALE.get(basis, 1.0),
+            math.radians(drive.phase or 0.0), line, float(drive.offset or 0.0),
+        )  # fmt: skip
+
+
+def _groups(bands: list[Any]) -> list[int]:
+    """Number lines so that those whose bands overlap, directly or through others, share a number."""
+    group = list(range(len(bands)))
+    for i, one in enumerate(bands):
+        for j in range(i):
+            if one.low <= bands[j].high and bands[j].low <= one.high:
+                old, new = group[i], group[j]
+                group = [new if g == old else g for g in group]
+    return group
+
+
+def _curve(owner: str, declared: Any) -> LossCurve:
+    """Loss as declared: nothing, one number, or a curve over frequency."""
+    if declared is None:
+        return LossCurve(owner, None, np.zeros(1))
+    if isinstance(declared, (int, float)):
+        return LossCurve(owner, None, np.array([float(declared)]))
+    hertz = np.array([float(x) for x, _ in declared.points])
+    value = np.array([float(y) for _, y in declared.points])
+    return LossCurve(owner, hertz, value)

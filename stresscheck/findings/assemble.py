@@ -1,0 +1,246 @@
+"""All findings of one state: what is asked is searched and bounded together, then judged one by one."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from stresscheck.circuit.build import build
+from stresscheck.circuit.network import Network
+from stresscheck.circuit.phasors import check_levels
+from stresscheck.errors import CheckError
+from stresscheck.findings.checks import Check, checks_of, part_notes
+from stresscheck.findings.explain import reason_for, steps_for
+from stresscheck.findings.finding import Finding, Place, Proof
+from stresscheck.findings.judge import judge
+from stresscheck.findings.worst import Asked, Limiting, Problem, Worst, worst_case
+from stresscheck.limits.limit import Limit
+from stresscheck.limits.policy import Policy
+
+if TYPE_CHECKING:
+    from stresscheck.design.model import Design
+
+Floats = NDArray[np.float64]
+Stop = Callable[[bool], bool]
+
+
+@dataclass(frozen=True, slots=True)
+class StateFindings:
+    """Findings of one state, and what the cautions need: the network, and each node's worst point.
+
+    `network` None where the state couldn't be built; `why` says so then.
+    """
+
+    state: str
+    findings: tuple[Finding, ...]
+    network: Network | None
+    worst: Mapping[tuple[str, str], tuple[float, Floats]]
+    why: str = ""
+
+
+@dataclass(slots=True)
+class _Plan:
+    """Functions to search for a list of checks: the column of each check's stress, and of its use of a moving limit."""
+
+    asked: list[Asked] = field(default_factory=list)
+    limits: list[float] = field(default_factory=list)
+    stress: list[int] = field(default_factory=list)
+    use: list[int] = field(default_factory=list)
+
+    def add(self, ask: Asked, limit: float) -> int:
+        self.asked.append(ask)
+        self.limits.append(limit)
+        return len(self.asked) - 1
+
+
+def find_all(
+    design: Design, state: str, kind: str, policy: Policy, gap: float, stop: Stop
+) -> StateFindings:
+    """Search, bound and judge every check of a state. `kind`: "operating", or "fault" (full ratings)."""
+    full = kind == "fault"
+    try:
+        network = build(design)
+        check_levels(network)
+        _check_solvable(network)
+    except CheckError as error:
+        checks = checks_of(design, policy, {}, full=full)
+        lost = tuple(_lost(check, state, kind, str(error)) for check in checks)
+        return StateFindings(state, lost, None, {}, str(error))
+    notes = part_notes(design)
+    kelvin = _upper_temperatures(network, notes, gap, stop)
+    checks = checks_of(design, policy, kelvin, full=full)
+    plan = _plan(network, checks)
+    problem = Problem(network, notes, plan.asked)
+    worst = worst_case(problem, gap, np.array(plan.limits), stop)
+    findings = tuple(
+        _finding(design, network, check, state, kind, plan, worst, index, gap)
+        for index, check in enumerate(checks)
+    )
+    seen = {
+        (ask.part, ask.quantity): (float(worst.peaks.value[n]), worst.peaks.point[n])
+        for n, ask in enumerate(plan.asked)
+        if ask.limit is None
+    }
+    return StateFindings(state, findings, network, seen)
+
+
+def _check_solvable(network: Network) -> None:
+    """Raise CheckError where the nominal circuit has no solution: the state as drawn can't exist."""
+    problem = Problem(network, {}, [Asked(f"node:{node}", "voltage_peak") for node in network.nodes])
+    if not network.nodes:
+        raise CheckError("nothing is left of the circuit: every node is joined to ground")
+    values = problem.values(network.axes.nominal[None])
+    if not np.isfinite(values).all():
+        raise CheckError("the nominal circuit has no unique solution at the drive frequency or at DC")
+
+
+def _upper_temperatures(network: Network, notes: Mapping[str, object], gap: float, stop: Stop) -> dict[str, float]:
+    """Proved upper temperature [K] of every part that declares what it takes to compute one."""
+    asked = [
+        Asked(name, "temperature")
+        for name, note in notes.items()
+        if getattr(note, "thermal_resistance", None) is not None and getattr(note, "ambient", None) is not None
+    ]
+    if not asked:
+        return {}
+    none = np.full(len(asked), np.nan)
+    worst = worst_case(Problem(network, notes, asked), gap, none, stop)  # type: ignore[arg-type]
+    return {
+        ask.part: float(bound)
+        for ask, bound in zip(asked, worst.bounds.bound, strict=True)
+        if math.isfinite(bound)
+    }
+
+
+def _plan(network: Network, checks: list[Check]) -> _Plan:
+    """One function per computable check, one more where its limit moves over the band; and every node's voltage."""
+    plan = _Plan()
+    bands = [network.axes.items[line.frequency_axis] for line in network.lines]
+    for check in checks:
+        if check.obstacle:
+            plan.stress.append(-1)
+            plan.use.append(-1)
+            continue
+        constant = all(limit.constant for limit in check.limits.limits) or not any(b.varies for b in bands)
+        limit = _smallest(check.limits.limits, bands) if constant else math.nan
+        plan.stress.append(plan.add(Asked(check.part, check.quantity), limit))
+        if constant or not math.isfinite(_smallest(check.limits.limits, bands)):
+            plan.use.append(-1)
+        else:
+            moving = Limiting(_at(check.limits.limits), _over(check.limits.limits))
+            plan.use.append(plan.add(Asked(check.part, check.quantity, moving), 1.0))
+    for node in network.nodes:
+        plan.add(Asked(f"node:{node}", "voltage_peak", prove=False), math.nan)
+    return plan
+
+
+def _smallest(limits: tuple[Limit, ...], bands: list) -> float:  # type: ignore[type-arg]
+    """Smallest allowed value over the bands of all lines; NaN where a limit is silent, or there is none."""
+    values = [
+        float(limit.allowed_smallest(np.array([b.low]), np.array([b.high]))[0]) for limit in limits for b in bands
+    ]
+    return min(values) if values and all(math.isfinite(v) for v in values) else math.nan
+
+
+def _at(limits: tuple[Limit, ...]) -> Callable[[Floats], Floats]:
+    return lambda hertz: np.min([limit.allowed(hertz) for limit in limits], axis=0)
+
+
+def _over(limits: tuple[Limit, ...]) -> Callable[[Floats, Floats], Floats]:
+    return lambda low, high: np.min([limit.allowed_smallest(low, high) for limit in limits], axis=0)
+
+
+def _silent(check: Check, network: Network) -> str:
+    """Where a rating of the check says nothing within the drives' bands."""
+    texts = []
+    for limit in check.limits.limits:
+        for line in network.lines:
+            band = network.axes.items[line.frequency_axis]
+            value = limit.allowed_smallest(np.array([band.low]), np.array([band.high]))
+            if not np.isfinite(value).all() and limit.silent_text() not in texts:
+                texts.append(limit.silent_text())
+    return "; ".join(texts)
+
+
+def _finding(
+    design: Design,
+    network: Network,
+    check: Check,
+    state: str,
+    kind: str,
+    plan: _Plan,
+    worst: Worst,
+    index: int,
+    gap: float,
+) -> Finding:
+    column = plan.stress[index]
+    if column < 0:
+        return _lost(check, state, kind, check.obstacle)
+    use = plan.use[index]
+    point = worst.peaks.point[use if use >= 0 else column]
+    if not np.isfinite(worst.peaks.value[column]):
+        return _lost(check, state, kind, "the voltage or current isn't set by the circuit, or no solution is vouched for")
+    problem = Problem(network, part_notes(design), [Asked(check.part, check.quantity)])
+    stress = float(worst.peaks.value[column]) if use < 0 else float(problem.values(point[None])[0, 0])
+    hertz = float(point[network.lines[0].frequency_axis])
+    bound = worst.bounds.bound[column] if math.isfinite(worst.bounds.bound[column]) else None
+    silent = _silent(check, network)
+    bound_use = _bound_use(worst, plan, index, use, column)
+    result = judge(check.limits, silent, stress, bound_use, hertz, "")
+    limit = result.limit
+    place = Place(hertz, tuple((a.path, float(v)) for a, v in zip(network.axes.items, point, strict=True)))
+    proof = Proof(
+        worst.bounds.boxes,
+        None if bound is None or stress <= 0.0 else max(0.0, float(bound) / stress - 1.0),
+        _method(network, worst),
+        float(worst.corners[column]) if math.isfinite(worst.corners[column]) else None,
+    )
+    return Finding(
+        id=f"{check.part}.{check.quantity}@{state}", state=state, state_kind=kind, event="steady",
+        part=check.part, kind=check.kind, quantity=check.quantity, unit=check.unit, verdict=result.verdict,
+        nominal=float(worst.nominal[column]) if math.isfinite(worst.nominal[column]) else None,
+        worst=stress, bound=None if bound is None else float(bound), rated=result.rated,
+        allowed_fraction=None if limit is None else limit.allowed_fraction, allowed=result.allowed,
+        ratio=result.ratio, at=place,
+        working=steps_for(network, check, point, stress) + (() if limit is None else limit.steps(hertz)),
+        rating_source="" if limit is None else limit.rating_source,
+        derating_source="" if limit is None else limit.derating_source,
+        why=result.why, proof=proof, reason=reason_for(network, check, point, stress),
+    )  # fmt: skip
+
+
+def _bound_use(worst: Worst, plan: _Plan, index: int, use: int, column: int) -> float | None:
+    """Proved bound of stress over allowed value; None where there is none."""
+    if use >= 0:
+        value = float(worst.bounds.bound[use])
+    else:
+        limit = plan.limits[column]
+        value = float(worst.bounds.bound[column]) / limit if limit > 0.0 else math.inf
+    return value if math.isfinite(value) else None
+
+
+def _method(network: Network, worst: Worst) -> str:
+    if not any(axis.varies for axis in network.axes.items):
+        return "nothing varies: the bound is the value itself"
+    if worst.bounds.spent:
+        return "corner rule over boxes, stopped by the budget before every gap was closed"
+    return "corner rule over boxes, split until every gap was closed"
+
+
+def _lost(check: Check, state: str, kind: str, why: str) -> Finding:
+    """A check that can't be made."""
+    result = judge(check.limits, "", None, None, 0.0, why)
+    limit = result.limit
+    return Finding(
+        id=f"{check.part}.{check.quantity}@{state}", state=state, state_kind=kind, event="steady",
+        part=check.part, kind=check.kind, quantity=check.quantity, unit=check.unit, verdict=result.verdict,
+        rated=result.rated, allowed=result.allowed,
+        allowed_fraction=None if limit is None else limit.allowed_fraction,
+        rating_source="" if limit is None else limit.rating_source,
+        derating_source="" if limit is None else limit.derating_source, why=result.why,
+    )  # fmt: skip

@@ -1,0 +1,127 @@
+"""Which stresses of a state are checked against what, and which checks can't be made."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any
+
+from stresscheck.limits.part_limits import PartLimits, limits_for
+from stresscheck.limits.policy import Policy
+from stresscheck.limits.quantities import KINDS, quantities_of
+from stresscheck.stress.sharing import bank_share
+from stresscheck.stress.stresses import PartNotes
+
+if TYPE_CHECKING:
+    from stresscheck.design.model import Design
+
+
+@dataclass(frozen=True, slots=True)
+class Check:
+    """One stress to be compared. `obstacle`: why it can't be computed, empty where it can."""
+
+    part: str
+    kind: str
+    quantity: str
+    unit: str
+    limits: PartLimits
+    obstacle: str = ""
+
+
+def part_notes(design: Design) -> dict[str, PartNotes]:
+    """What the stress functions need to know of every present part, drives included."""
+    ambient = design.site.ambient_span()
+    hottest = None if ambient is None else float(ambient.high)
+    notes: dict[str, PartNotes] = {}
+    for kind in KINDS:
+        for name, part in present(design, kind):
+            notes[name] = _note(kind, part, hottest)
+    return notes
+
+
+def present(design: Design, kind: str) -> list[tuple[str, Any]]:
+    """Parts of a kind that are in the circuit in this state."""
+    absent = design.opened | design.shorted
+    return [(name, part) for name, part in getattr(design, kind).items() if name not in absent]
+
+
+def _note(kind: str, part: Any, ambient: float | None) -> PartNotes:
+    if kind == "drive":
+        return PartNotes(kind)
+    rise = part.thermal_resistance
+    thermal = None if rise is None else float(rise)
+    if kind == "inductor":
+        turns = None if part.turns is None else float(part.turns)
+        area = None if part.core_area is None else float(part.core_area)
+        return PartNotes(kind, turns=turns, core_area=area, thermal_resistance=thermal, ambient=ambient)
+    tolerance = part.unit_tolerance
+    share = bank_share(
+        part.in_series or 1,
+        part.in_parallel or 1,
+        0.0 if tolerance is None else max(abs(float(tolerance.low)), abs(float(tolerance.high))),
+        dc_divides=kind == "resistor",
+    )
+    return PartNotes(kind, share, thermal_resistance=thermal, ambient=ambient)
+
+
+def checks_of(
+    design: Design, policy: Policy, kelvin: Mapping[str, float], *, full: bool
+) -> list[Check]:
+    """Every check of a state, parts in file order, quantities in registry order.
+
+    kelvin: upper temperature of the parts for which it is known; full: compare with full ratings (fault states).
+    """
+    everything = "; ".join(unavailable(design))
+    found = []
+    for kind in KINDS:
+        for name, part in present(design, kind):
+            for quantity in quantities_of(kind):
+                limits = limits_for(
+                    policy, kind, name, part, quantity.name, kelvin=kelvin.get(name), full=full
+                )
+                if limits.outcome == "not-asked":
+                    continue
+                obstacle = everything or _obstacle(design, kind, name, part, quantity.name)
+                found.append(Check(name, kind, quantity.name, quantity.unit, limits, obstacle))
+    return found
+
+
+def unavailable(design: Design) -> list[str]:
+    """What the file declares that changes every stress and that isn't computed."""
+    found = []
+    for name, drive in present(design, "drive"):
+        waveform = getattr(drive, "waveform", None) or "sine"
+        if waveform != "sine" or getattr(drive, "harmonics", None):
+            found.append(f"the waveform of drive {name} isn't a sine; only sine drives are computed")
+        if getattr(drive, "gating", None) is not None:
+            found.append(f"drive {name} is gated; only continuous drives are computed")
+    for kind in ("capacitor", "inductor", "resistor"):
+        for name, part in present(design, kind):
+            if part.temperature_coefficient is not None:
+                found.append(f"temperature_coefficient of {name}: drift by temperature isn't computed")
+    for name, part in present(design, "inductor"):
+        if part.winding is not None and part.resistance is None and part.q is None:
+            found.append(f"winding of {name}: its resistance isn't computed; declare resistance or q")
+    return found
+
+
+def _obstacle(design: Design, kind: str, name: str, part: Any, quantity: str) -> str:
+    """Why one stress can't be computed from what the file declares."""
+    heat = quantity in ("dissipation", "temperature")
+    if heat and kind == "capacitor" and part.dissipation_factor is None and part.esr is None and part.q is None:
+        return f"no loss of {name} is declared (dissipation_factor, esr or q)"
+    if heat and kind == "inductor":
+        if part.resistance is None and part.q is None:
+            return f"no loss of {name} is declared (resistance or q)"
+        if part.core is not None:
+            return f"the core loss of {name} isn't computed"
+    if quantity == "temperature":
+        if part.thermal_resistance is None:
+            return f"thermal_resistance of {name} isn't declared"
+        if design.site.ambient_span() is None:
+            return "site.ambient isn't declared"
+    if quantity == "flux_density" and (part.turns is None or part.core_area is None):
+        return f"turns and core_area of {name} are needed"
+    if quantity == "pulse_energy":
+        return "the energy of pulses isn't computed"
+    return ""

@@ -1,0 +1,126 @@
+"""From the worst points of a state to what the cautions look at."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from stresscheck.cautions.facts import CapacitorFact, NodeFact
+from stresscheck.circuit.direct import groups
+from stresscheck.circuit.modes import natural_modes
+from stresscheck.circuit.network import Network
+from stresscheck.circuit.phasors import phasors
+from stresscheck.findings.assemble import StateFindings
+from stresscheck.findings.explain import distance
+from stresscheck.stress.sizes import sizes_at
+from stresscheck.stress.stresses import stresses
+
+if TYPE_CHECKING:
+    from stresscheck.design.model import Design
+
+Floats = NDArray[np.float64]
+NEAR = 3.0
+
+
+def node_facts(design: Design, found: StateFindings) -> list[NodeFact]:
+    """Worst voltage of every node to the reference, at the point where its peak is largest."""
+    network = found.network
+    if network is None:
+        return []
+    facts = []
+    reachable = design.site.reachable
+    for node in network.nodes:
+        value, point = found.worst[f"node:{node}", "voltage_peak"]
+        if not math.isfinite(value):
+            facts.append(_unknown(node, found.state, reachable is None or node in reachable))
+            continue
+        part = f"node:{node}"
+        here = stresses(network, {}, sizes_at(network, point[None]))
+        drive, volt, resonance = _reason(network, point)
+        facts.append(
+            NodeFact(
+                node, found.state, float(here[part, "voltage_rms"][0]), value, float(here[part, "voltage_dc"][0]),
+                _highest(network, point), drive, volt, None if not volt else value / volt, resonance,
+                reachable is None or node in reachable,
+            )  # fmt: skip
+        )
+    return facts
+
+
+def _unknown(node: str, state: str, reachable: bool) -> NodeFact:
+    nan = math.nan
+    return NodeFact(node, state, nan, nan, nan, nan, "", None, None, None, reachable)
+
+
+def _highest(network: Network, point: Floats) -> float:
+    return max(float(point[line.frequency_axis]) for line in network.lines)
+
+
+def _reason(network: Network, point: Floats) -> tuple[str, float | None, float | None]:
+    """Name and peak voltage of the drive where there is one voltage drive, and the resonance that it meets."""
+    source = network.sources[0]
+    if len(network.sources) != 1 or source.branch is None:
+        return source.name, None, None
+    hertz = float(point[network.lines[0].frequency_axis])
+    level = float(abs(phasors(network, point[None], network.lines[0]).level[0, 0]))
+    near = [m for m in natural_modes(network, point) if distance(m, hertz) <= NEAR]
+    resonance = min(near, key=lambda m: abs(m.hertz - hertz)).hertz if near else None
+    return source.name, level, resonance
+
+
+def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]:
+    """Largest voltage and capacitance of every capacitor (whole bank), and whether anything discharges it.
+
+    With all drives open, a path for direct current must join its two nodes; a drive that is switched off may leave
+    them open.
+    """
+    network = found.network
+    if network is None:
+        return []
+    facts = []
+    absent = design.opened | design.shorted
+    group = groups(_without_sources(network))
+    for name, part in design.capacitor.items():
+        place = network.branch_of(name)
+        if name in absent or place is None:
+            continue
+        branch = network.branches[place]
+        scale = (part.in_parallel or 1) / (part.in_series or 1)
+        value, point = _worst_volt(network, found.worst, name, place)
+        tied = group[branch.first] == group[branch.second] or network.branch_of(name, "leakage") is not None
+        leak = network.branch_of(name, "leakage")
+        trapped = None
+        if not tied and point is not None:
+            trapped = float(sizes_at(network, point[None]).direct.volt[0, place])
+        drive, volt, resonance = _reason(network, point if point is not None else network.axes.nominal)
+        facts.append(
+            CapacitorFact(
+                name, found.state, float(part.span().high) * scale, value, trapped or None, tied,
+                network.branches[leak].fixed if leak is not None else None, str(part.family or ""),
+                drive, volt, value / volt if volt else None, resonance,
+            )  # fmt: skip
+        )
+    return facts
+
+
+def _worst_volt(
+    network: Network, worst: Mapping[tuple[str, str], tuple[float, Floats]], name: str, place: int
+) -> tuple[float, Floats | None]:
+    """Largest voltage of the whole bank, and where: the searched stress is that of a unit."""
+    if (name, "voltage_peak") not in worst:
+        return math.nan, None
+    value, point = worst[name, "voltage_peak"]
+    if not math.isfinite(value):
+        return math.nan, None
+    sizes = sizes_at(network, point[None])
+    return float(sizes.volt[:, 0, place].sum() + sizes.direct.volt[0, place]), point
+
+
+def _without_sources(network: Network) -> Network:
+    """The network with every drive taken out: what is left to discharge through."""
+    kept = tuple(b for b in network.branches if b.role != "source")
+    return Network(network.axes, network.nodes, kept, (), network.transformers, (), ())

@@ -1,0 +1,123 @@
+"""Where several functions peak in a box: from many starts, one axis at a time, to the best of offered values."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from stresscheck.search.box import Box
+
+Floats = NDArray[np.float64]
+Indices = NDArray[np.intp]
+Evaluate = Callable[[Floats], Floats]
+"""points [points, axes] → values [points, functions]; NaN where there is none."""
+Candidates = Callable[[Floats, Indices, int], Floats]
+"""(points, function of each point, axis) → values to try on that axis [points, tries]; NaN to try nothing.
+What is offered decides how exactly a peak is met: stationary values of the function along the axis are best."""
+
+KEPT = 4
+"""Starts kept per function."""
+SWEEPS = 40
+SETTLED = 1e-13
+"""A sweep that gains less than this, relative, ends a climb."""
+
+
+@dataclass(frozen=True, slots=True)
+class Peaks:
+    """Largest values found: `value` [functions], and where, `point` [functions, axes]."""
+
+    value: Floats
+    point: Floats
+
+
+def climb(box: Box, evaluate: Evaluate, candidates: Candidates, starts: Floats) -> Peaks:
+    """Largest value of every function, climbing from the best starts of each.
+
+    Never below the best start. A start whose values are all NaN is passed over; where a function is NaN at every
+    start its value is NaN.
+    """
+    values = _clean(evaluate(starts))
+    best = _best_starts(values)
+    target = np.repeat(np.arange(values.shape[1]), best.shape[1])
+    points = starts[best.reshape(-1)].copy()
+    height = values[best.reshape(-1), target]
+    for sweep in range(SWEEPS):
+        before = height.copy()
+        for axis in box.varying:
+            points, height = _move(box, evaluate, candidates, points, target, height, axis)
+        gain = height - before
+        moving = gain > SETTLED * np.abs(height)
+        if sweep == 1:
+            points, height, target = _leaders(points, height, target)
+        if not moving.any():
+            break
+    return _collect(points, height, target, values.shape[1])
+
+
+def merge(one: Peaks, other: Peaks) -> Peaks:
+    """The larger of two sets of peaks, function by function."""
+    take = ~(one.value >= other.value) & np.isfinite(other.value)
+    return Peaks(np.where(take, other.value, one.value), np.where(take[:, None], other.point, one.point))
+
+
+def _clean(values: Floats) -> Floats:
+    return np.where(np.isfinite(values), values, -np.inf)
+
+
+def _best_starts(values: Floats) -> Indices:
+    """Row numbers of the best starts of each function, [functions, kept]."""
+    kept = min(KEPT, len(values))
+    return np.argsort(-values, axis=0, kind="stable")[:kept].T
+
+
+def _move(
+    box: Box,
+    evaluate: Evaluate,
+    candidates: Candidates,
+    points: Floats,
+    target: Indices,
+    height: Floats,
+    axis: int,
+) -> tuple[Floats, Floats]:
+    """Set one axis of every climber to the best value offered; stay where none is better."""
+    offered = candidates(points, target, axis)
+    here = points[:, axis : axis + 1]
+    offered = np.where(np.isfinite(offered), offered, here)
+    ends = np.broadcast_to([box.low[axis], box.high[axis]], (len(points), 2))
+    tries = np.clip(np.concatenate([offered, ends], axis=1), box.low[axis], box.high[axis])
+    count = tries.shape[1]
+    trial = np.repeat(points, count, axis=0)
+    trial[:, axis] = tries.reshape(-1)
+    values = _clean(evaluate(trial)).reshape(len(points), count, -1)
+    mine = np.take_along_axis(values, target[:, None, None], axis=2)[:, :, 0]
+    pick = mine.argmax(axis=1)
+    top = mine[np.arange(len(points)), pick]
+    better = top > height
+    moved = points.copy()
+    moved[better, axis] = tries[np.arange(len(points)), pick][better]
+    return moved, np.where(better, top, height)
+
+
+def _leaders(points: Floats, height: Floats, target: Indices) -> tuple[Floats, Floats, Indices]:
+    """The two highest climbers of each function; the others have shown where they lead."""
+    keep: list[int] = []
+    for function in np.unique(target):
+        members = np.flatnonzero(target == function)
+        order = members[np.argsort(-height[members], kind="stable")]
+        keep.extend(int(i) for i in order[:2])
+    chosen = np.array(keep, dtype=np.intp)
+    return points[chosen], height[chosen], target[chosen]
+
+
+def _collect(points: Floats, height: Floats, target: Indices, functions: int) -> Peaks:
+    value = np.full(functions, np.nan)
+    point = np.full((functions, points.shape[1]), np.nan)
+    for function in range(functions):
+        members = np.flatnonzero(target == function)
+        top = members[height[members].argmax()]
+        point[function] = points[top]
+        value[function] = height[top] if np.isfinite(height[top]) else np.nan
+    return Peaks(value, point)

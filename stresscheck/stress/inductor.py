@@ -1,0 +1,38 @@
+"""Stresses of an inductor: the winding's own current and the voltage across it."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from stresscheck.stress.seen import PartSeen, heat, peak, rms
+
+Floats = NDArray[np.float64]
+
+
+def inductor_stress(seen: PartSeen, turns: float | None, core_area: float | None) -> dict[str, Floats]:
+    """All steady stresses, each of shape [points]; sizes in V, A, T, W.
+
+    current_peak = |DC| + sum of peaks and current_rms with DC, both of the winding; flux_density = L I/(N A) at the
+    peak current, where `turns` N and `core_area` A [m^2] are known; dissipation = R I^2 in the winding and V^2/R in
+    the core's parallel resistance. Source: circuit theory.
+    """
+    main, groups = seen.main, seen.groups
+    current = peak(main.dc_ampere, main.ampere)
+    out = {
+        "current_peak": current,
+        "current_rms": rms(main.dc_ampere, main.ampere, groups),
+        "voltage_peak": peak(main.dc_volt, main.volt),
+        "voltage_rms": rms(main.dc_volt, main.volt, groups),
+        "dissipation": _dissipation(seen),
+    }
+    if turns and core_area:
+        out["flux_density"] = seen.value[1] * current / (turns * core_area)
+    return out
+
+
+def _dissipation(seen: PartSeen) -> Floats:
+    total = heat(seen.main, seen.groups)
+    if "core_loss" in seen.branches:
+        total = total + heat(seen.branches["core_loss"], seen.groups)
+    return total

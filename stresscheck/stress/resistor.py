@@ -1,0 +1,25 @@
+"""Stresses of a resistor."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from stresscheck.stress.seen import PartSeen, heat, peak, rms
+from stresscheck.stress.sharing import Share
+
+Floats = NDArray[np.float64]
+
+
+def resistor_stress(seen: PartSeen, share: Share) -> dict[str, Floats]:
+    """Dissipation [W], voltage peak and RMS with DC [V] of the worst unit, each of shape [points].
+
+    Source: circuit theory.
+    """
+    main = seen.main
+    volt, dc = main.volt * share.volt, main.dc_volt * share.volt
+    return {
+        "dissipation": heat(main, seen.groups) * share.volt * share.ampere,
+        "voltage_peak": peak(dc, volt),
+        "voltage_rms": rms(dc, volt, seen.groups),
+    }
