@@ -10,9 +10,10 @@ from dataclasses import dataclass
 class NodeFact:
     """A node in one state, worst over its box; sizes, not negative. `gain` = node peak over drive peak.
 
-    `volt_rms` is the AC part, `volt_dc` the direct part, `volt_peak` the size of both together; `hertz` is where the
-    worst occurs. `drive_volt_peak`, `gain` None where the drive is a current, `resonance_hertz` None where no
-    resonance lies in or near the band. A figure that couldn't be computed is NaN: it raises a caution of its own.
+    `volt_rms` is the AC part, `volt_dc` the direct part, `volt_peak` the size of both together; `hertz` is
+    where the worst occurs. `drive_volt_peak`, `gain` None where the drive is a current, `resonance_hertz`
+    None where no resonance lies in or near the band. A figure that couldn't be computed is NaN: it raises a
+    caution of its own.
     """
 
     node: str
@@ -40,11 +41,12 @@ class NodeFact:
 
 @dataclass(frozen=True, slots=True)
 class CapacitorFact:
-    """A capacitor in one state, worst over its box: largest capacitance and peak voltage (whole bank, terminals).
+    """A capacitor in one state, worst over its box: largest capacitance and peak voltage (whole bank).
 
-    `volt_dc_trapped`: direct voltage that stays after switch-off, None where none does; `has_discharge_path`: a path
-    for direct current lies across it with all drives open; `discharge_ohm`: its largest resistance, None where it
-    isn't known. `kind_family`: the family as declared. The drive's figures give the reason, where known.
+    `volt_dc_trapped`: direct voltage that stays after switch-off, None where none does; `has_discharge_path`:
+    a path for direct current lies across it with all drives open; `discharge_ohm`: its largest resistance,
+    None where it isn't known. `kind_family`: the family as declared. The drive's figures give the reason,
+    where known.
     """
 
     part: str
@@ -79,7 +81,7 @@ class CapacitorFact:
 
 @dataclass(frozen=True, slots=True)
 class Facts:
-    """Everything the cautions look at. `access`: "ordinary" or "skilled"; the band is that of all drives [Hz]."""
+    """Everything the cautions look at. `access`: "ordinary" or "skilled"; the band of all drives [Hz]."""
 
     nodes: tuple[NodeFact, ...]
     capacitors: tuple[CapacitorFact, ...]

@@ -1,0 +1,250 @@
+"""Design: everything that one design file says, read, checked and frozen. All figures in SI."""
+
+from __future__ import annotations
+
+import datetime
+from collections.abc import Mapping
+from pathlib import Path
+from types import MappingProxyType
+from typing import Annotated, Any
+
+from pydantic import AfterValidator, Field, PrivateAttr, model_validator
+
+from stresscheck.design import fields as f
+from stresscheck.design.parts import (
+    Capacitor,
+    Coupling,
+    DriveRating,
+    Inductor,
+    Probe,
+    Resistor,
+    Spacing,
+    Table,
+    Transformer,
+)
+from stresscheck.design.quantity import Quantity, Span, span_of
+
+LEVELS = ("peak", "rms", "peak_to_peak", "available_power", "delivered_power")
+PART_KINDS = ("drive", "capacitor", "inductor", "resistor", "transformer", "coupling", "spacing", "probe")
+"""Tables whose names must be unique across kinds, in the order of the file's documentation."""
+
+
+class Site(Table):
+    """Where the circuit runs, and who can reach it."""
+
+    ambient: f.quantity_range("kelvin") | None = None  # type: ignore[valid-type]
+    altitude: f.quantity("altitude") | None = None  # type: ignore[valid-type]
+    pollution_degree: f.count(1, 3, "a pollution degree") = 2  # type: ignore[valid-type]
+    reachable: f.names("nodes") | None = None  # type: ignore[valid-type]
+    access: f.choice("ordinary", "skilled") = "ordinary"  # type: ignore[valid-type]
+
+    def ambient_span(self) -> Span | None:
+        """Coldest, middle and hottest ambient temperature [K], None where none is declared."""
+        return None if self.ambient is None else span_of(self.ambient, None, None, middle="arithmetic")
+
+
+class Gating(Table):
+    """A drive that is switched on and off periodically."""
+
+    on: f.quantity("second")  # type: ignore[valid-type]
+    period: f.quantity("second")  # type: ignore[valid-type]
+
+    @model_validator(mode="after")
+    def _on_within_period(self) -> Gating:
+        if not (self.on < self.period):
+            raise f.fail("out-of-range", "an on time shorter than the period", "correct one of the two")
+        return self
+
+
+class Drive(Table):
+    """A voltage drive (level in V, or by power) or a current drive (level in A)."""
+
+    between: f.node_pair()  # type: ignore[valid-type]
+    peak: Any = None
+    rms: Any = None
+    peak_to_peak: Any = None
+    available_power: f.quantity("watt") | None = None  # type: ignore[valid-type]
+    delivered_power: f.quantity("watt") | None = None  # type: ignore[valid-type]
+    frequency: f.quantity_range("hertz")  # type: ignore[valid-type]
+    phase: f.number(-360.0, 360.0, "a phase in degrees") | None = None  # type: ignore[valid-type]
+    waveform: f.choice("sine", "square", "triangle") = "sine"  # type: ignore[valid-type]
+    harmonics: Any = None
+    duty: f.number(0.001, 0.999, "a duty") | None = None  # type: ignore[valid-type]
+    offset: Any = None
+    tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
+    source_resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    gating: Gating | None = None
+    any_waveform: f.flag() = False  # type: ignore[valid-type]
+    rating: DriveRating | None = None
+
+    @model_validator(mode="before")
+    @classmethod
+    def _levels_are_quantities(cls, raw: Any) -> Any:
+        """Levels and offset are in V or in A, by what the text says."""
+        if isinstance(raw, dict):
+            raw = dict(raw)
+            for key in ("peak", "rms", "peak_to_peak", "offset"):
+                if key in raw and not isinstance(raw[key], Quantity):
+                    raw[key] = _Level(raw[key], key)
+        return raw
+
+    @model_validator(mode="after")
+    def _one_level(self) -> Drive:
+        given = [key for key in LEVELS if getattr(self, key) is not None]
+        if len(given) != 1:
+            words = ", ".join(LEVELS)
+            raise f.fail("conflicting-keys", f"exactly one of {words}", "the basis of a level can't be left out")
+        if self.available_power is not None and self.source_resistance is None:
+            raise f.fail("missing-key", "source_resistance beside available_power", "add source_resistance")
+        if self.offset is not None and self.offset.unit != self.level_unit:
+            raise f.fail("wrong-dimension", f"an offset in {self.level_unit}", "give level and offset in one unit")
+        _check_harmonics(self.harmonics)
+        if not (self.level_span()[1].low > 0.0):
+            raise f.fail("out-of-range", "a level above zero", "a drive without level isn't one: leave it out")
+        return self
+
+    @property
+    def level_unit(self) -> str:
+        """Unit of the level: V for drives by power too."""
+        return next((getattr(self, k).unit for k in LEVELS[:3] if getattr(self, k) is not None), "V")
+
+    @property
+    def source(self) -> str:
+        """ "voltage" or "current"."""
+        return "current" if self.level_unit == "A" else "voltage"
+
+    def level_span(self) -> tuple[str, Span]:
+        """Basis of the level, and its smallest, nominal and largest value (V, A or W)."""
+        basis = next(key for key in LEVELS if getattr(self, key) is not None)
+        level: Quantity = getattr(self, basis)
+        return basis, span_of(Quantity(float(level), level.text), None, self.tolerance)
+
+    def band(self) -> Span:
+        """Lowest, middle and highest frequency [Hz]."""
+        return span_of(self.frequency, None, None, middle="arithmetic")
+
+
+class _Level(Quantity):
+    """A level or offset that knows its unit, V or A."""
+
+    __slots__ = ("unit",)
+    unit: str
+
+    def __new__(cls, raw: Any, key: str) -> _Level:
+        signed = "signed_" if key == "offset" else ""
+        unit, name = ("A", "ampere") if isinstance(raw, str) and raw.rstrip().endswith("A") else ("V", "volt")
+        read = f.read_quantity(raw, f.WANTED[signed + name])
+        made = super().__new__(cls, float(read), read.text)
+        object.__setattr__(made, "unit", unit)
+        return made
+
+
+def _check_harmonics(raw: Any) -> None:
+    if raw is None:
+        return
+    shape = "harmonics = [[order, relative size, phase in degrees], …]"
+    if not isinstance(raw, list) or not raw:
+        raise f.fail("wrong-type", shape, "write a list of lists")
+    for item in raw:
+        numbers = isinstance(item, list) and all(
+            isinstance(x, (int, float)) and not isinstance(x, bool) for x in item
+        )
+        if not numbers or len(item) != 3 or not isinstance(item[0], int) or item[0] < 1 or not 0 <= item[1] <= 1e3:
+            raise f.fail("wrong-type", shape, "order is a whole number from 1, size is not negative")
+
+
+class State(Table):
+    """A changed circuit: `change` maps paths to new values, or a part to "open" or "short"."""
+
+    change: Mapping[str, Any] = Field(default_factory=dict)
+    kind: f.choice("operating", "fault") = "operating"  # type: ignore[valid-type]
+    frequency: f.quantity_range("hertz") | None = None  # type: ignore[valid-type]
+
+
+class Accept(Table):
+    """A finding that named people take responsibility for until a date."""
+
+    finding: f.words(200, "the id of a finding")  # type: ignore[valid-type]
+    reason: f.words(1000, "a reason")  # type: ignore[valid-type]
+    by: f.words(200, "who takes responsibility")  # type: ignore[valid-type]
+    until: datetime.date
+
+
+def _frozen(value: Mapping[str, Any]) -> Mapping[str, Any]:
+    return MappingProxyType(dict(value))
+
+
+def _tables(model: type[Table]) -> Any:
+    return Annotated[Mapping[str, model], AfterValidator(_frozen), Field(default_factory=dict)]  # type: ignore[valid-type]
+
+
+class Design(Table):
+    """One design file. `in_state(name)` gives the circuit of a state; the file as written is the state "normal"."""
+
+    title: f.words(200, "a title")  # type: ignore[valid-type]
+    revision: f.words(40, "a revision") | None = None  # type: ignore[valid-type]
+    derating: f.words(200, "a derating policy")  # type: ignore[valid-type]
+    notes: f.words(20000, "notes") | None = None  # type: ignore[valid-type]
+    site: Site = Field(default_factory=Site)
+    drive: _tables(Drive)  # type: ignore[valid-type]
+    capacitor: _tables(Capacitor)  # type: ignore[valid-type]
+    inductor: _tables(Inductor)  # type: ignore[valid-type]
+    resistor: _tables(Resistor)  # type: ignore[valid-type]
+    transformer: _tables(Transformer)  # type: ignore[valid-type]
+    coupling: _tables(Coupling)  # type: ignore[valid-type]
+    spacing: _tables(Spacing)  # type: ignore[valid-type]
+    probe: _tables(Probe)  # type: ignore[valid-type]
+    state: _tables(State)  # type: ignore[valid-type]
+    accept: _tables(Accept)  # type: ignore[valid-type]
+
+    _file: str = PrivateAttr(default="design.toml")
+    _folder: Path | None = PrivateAttr(default=None)
+    _sha256: str = PrivateAttr(default="")
+    _opened: frozenset[str] = PrivateAttr(default=frozenset())
+    _shorted: frozenset[str] = PrivateAttr(default=frozenset())
+    _in_state: Mapping[str, Design] = PrivateAttr(default_factory=dict)
+
+    @property
+    def file(self) -> str:
+        """Name of the file, without folders."""
+        return self._file
+
+    @property
+    def folder(self) -> Path | None:
+        """Folder against which paths in the file are read; None for a design from text."""
+        return self._folder
+
+    @property
+    def sha256(self) -> str:
+        """Hash of the file's bytes."""
+        return self._sha256
+
+    @property
+    def opened(self) -> frozenset[str]:
+        """Parts that are open in this state."""
+        return self._opened
+
+    @property
+    def shorted(self) -> frozenset[str]:
+        """Parts that are shorted in this state."""
+        return self._shorted
+
+    @property
+    def states(self) -> tuple[str, ...]:
+        """Names of the states, "normal" first."""
+        return ("normal", *self.state)
+
+    def in_state(self, name: str) -> Design:
+        """The circuit in one state; KeyError for an unknown one."""
+        return self if name == "normal" else self._in_state[name]
+
+    def kind_of(self, name: str) -> str:
+        """Which table a part stands in; KeyError where there is none of this name."""
+        for kind in PART_KINDS:
+            if name in getattr(self, kind):
+                return kind
+        raise KeyError(name)
+
+    def part(self, name: str) -> Any:
+        """The part of this name; KeyError where there is none."""
+        return getattr(self, self.kind_of(name))[name]

@@ -1,0 +1,251 @@
+"""Tables of the design file, one frozen model per kind of part. Names are the keys of the file."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from pydantic import BaseModel, ConfigDict, model_validator
+
+from stresscheck.design import fields as f
+from stresscheck.design.quantity import Span, Tolerance, Value, span_of
+
+
+class Table(BaseModel):
+    """A table of the file: unknown keys are errors, nothing changes after reading."""
+
+    model_config = ConfigDict(extra="forbid", frozen=True, arbitrary_types_allowed=True)
+
+
+class Rating(Table):
+    """What the maker states. Each figure names its basis; `source` says where the figures stand."""
+
+    source: f.words(300, "where the ratings stand") | None = None  # type: ignore[valid-type]
+
+
+class CapacitorRating(Rating):
+    voltage_dc: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_peak_to_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_rms: f.rating("volt") | None = None  # type: ignore[valid-type]
+    current_peak: f.rating("ampere") | None = None  # type: ignore[valid-type]
+    current_rms: f.rating("ampere") | None = None  # type: ignore[valid-type]
+    dissipation: f.rating("watt") | None = None  # type: ignore[valid-type]
+    reactive_power: f.rating("var") | None = None  # type: ignore[valid-type]
+    slew_rate: f.rating("volt_per_second") | None = None  # type: ignore[valid-type]
+    temperature: f.quantity("kelvin") | None = None  # type: ignore[valid-type]
+
+
+class InductorRating(Rating):
+    current_peak: f.rating("ampere") | None = None  # type: ignore[valid-type]
+    current_rms: f.rating("ampere") | None = None  # type: ignore[valid-type]
+    saturation_current: f.rating("ampere") | None = None  # type: ignore[valid-type]
+    saturation_drop: f.number(0.0, 1.0, "drop of inductance at saturation_current") | None = None  # type: ignore[valid-type]
+    voltage_dc: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_rms: f.rating("volt") | None = None  # type: ignore[valid-type]
+    flux_density: f.rating("tesla") | None = None  # type: ignore[valid-type]
+    dissipation: f.rating("watt") | None = None  # type: ignore[valid-type]
+    temperature: f.quantity("kelvin") | None = None  # type: ignore[valid-type]
+
+
+class ResistorRating(Rating):
+    dissipation: f.rating("watt") | None = None  # type: ignore[valid-type]
+    voltage_dc: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_rms: f.rating("volt") | None = None  # type: ignore[valid-type]
+    pulse_energy: f.rating("joule") | None = None  # type: ignore[valid-type]
+    temperature: f.quantity("kelvin") | None = None  # type: ignore[valid-type]
+
+
+class DriveRating(Rating):
+    current_peak: f.rating("ampere") | None = None  # type: ignore[valid-type]
+    current_rms: f.rating("ampere") | None = None  # type: ignore[valid-type]
+    power: f.rating("watt") | None = None  # type: ignore[valid-type]
+
+
+class ProbeRating(Rating):
+    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
+
+
+class Valued(Table):
+    """A part with a value between two nodes."""
+
+    between: f.node_pair()  # type: ignore[valid-type]
+    value: Any
+    nominal: Any = None
+    tolerance: Any = None
+    family: f.words(80, "a family of parts") | None = None  # type: ignore[valid-type]
+    temperature_coefficient: f.quantity("per_kelvin") | None = None  # type: ignore[valid-type]
+    thermal_resistance: f.quantity("kelvin_per_watt") | None = None  # type: ignore[valid-type]
+    part: f.words(200, "a part of a parts file") | None = None  # type: ignore[valid-type]
+
+    @model_validator(mode="after")
+    def _span_is_positive(self) -> Valued:
+        span = self.span()
+        if not (span.low > 0.0):
+            raise f.fail("out-of-range", "a tolerance that leaves the value positive", "narrow the tolerance")
+        if not (span.low <= span.nominal <= span.high):
+            raise f.fail("out-of-range", "a nominal value within the range", "correct nominal or value")
+        return self
+
+    def span(self) -> Span:
+        """Smallest, nominal and largest value over range and tolerance, SI."""
+        value: Value = self.value
+        tolerance: Tolerance | None = self.tolerance
+        return span_of(value, self.nominal, tolerance)
+
+
+class Capacitor(Valued):
+    value: f.quantity_range("farad")  # type: ignore[valid-type]
+    nominal: f.quantity("farad") | None = None  # type: ignore[valid-type]
+    tolerance: f.tolerance("farad") | None = None  # type: ignore[valid-type]
+    dissipation_factor: f.loss_factor() | None = None  # type: ignore[valid-type]
+    esr: f.loss("ohm") | None = None  # type: ignore[valid-type]
+    q: f.number(1.0, 1e7, "a quality factor") | None = None  # type: ignore[valid-type]
+    q_at: f.quantity("hertz") | None = None  # type: ignore[valid-type]
+    in_series: f.count(1, 10000, "units in series") | None = None  # type: ignore[valid-type]
+    in_parallel: f.count(1, 10000, "units in parallel") | None = None  # type: ignore[valid-type]
+    unit_tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
+    series_inductance: f.quantity("henry") | None = None  # type: ignore[valid-type]
+    self_resonance: f.quantity("hertz") | None = None  # type: ignore[valid-type]
+    leakage_resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    rating: CapacitorRating | None = None
+
+    @model_validator(mode="after")
+    def _losses_once(self) -> Capacitor:
+        _together(self, "q", "q_at")
+        _either(self, "q", "dissipation_factor")
+        _either(self, "q", "esr")
+        _either(self, "series_inductance", "self_resonance")
+        return self
+
+
+class Winding(Table):
+    """How an inductor is wound: read and checked; its losses aren't computed from it yet."""
+
+    wire_diameter: f.quantity("metre") | None = None  # type: ignore[valid-type]
+    strands: f.count(1, 100000, "strands") | None = None  # type: ignore[valid-type]
+    strand_diameter: f.quantity("metre") | None = None  # type: ignore[valid-type]
+    turns: f.number(0.5, 1e5, "turns") | None = None  # type: ignore[valid-type]
+    layers: f.count(1, 1000, "layers") | None = None  # type: ignore[valid-type]
+    coil_diameter: f.quantity("metre") | None = None  # type: ignore[valid-type]
+    length: f.quantity("metre") | None = None  # type: ignore[valid-type]
+    turn_voltage: f.quantity("volt") | None = None  # type: ignore[valid-type]
+    layer_voltage: f.quantity("volt") | None = None  # type: ignore[valid-type]
+
+
+class Core(Table):
+    """Coefficients of the core loss P_v = k f^a B^b, W/m^3 with f in Hz and B in T: read and checked only yet."""
+
+    k: f.number(0.0, 1e12, "the Steinmetz coefficient k, W/m^3")  # type: ignore[valid-type]
+    a: f.number(0.5, 3.0, "the Steinmetz exponent of frequency")  # type: ignore[valid-type]
+    b: f.number(0.5, 5.0, "the Steinmetz exponent of flux density")  # type: ignore[valid-type]
+    volume: f.quantity("volume")  # type: ignore[valid-type]
+    source: f.words(300, "where the coefficients stand") | None = None  # type: ignore[valid-type]
+
+
+class Inductor(Valued):
+    value: f.quantity_range("henry")  # type: ignore[valid-type]
+    nominal: f.quantity("henry") | None = None  # type: ignore[valid-type]
+    tolerance: f.tolerance("henry") | None = None  # type: ignore[valid-type]
+    resistance: f.loss("ohm") | None = None  # type: ignore[valid-type]
+    q: f.number(1e-3, 1e7, "a quality factor") | None = None  # type: ignore[valid-type]
+    q_at: f.quantity("hertz") | None = None  # type: ignore[valid-type]
+    winding: Winding | None = None
+    parallel_resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    parallel_capacitance: f.quantity("farad") | None = None  # type: ignore[valid-type]
+    self_resonance: f.quantity("hertz") | None = None  # type: ignore[valid-type]
+    turns: f.number(0.5, 1e5, "turns") | None = None  # type: ignore[valid-type]
+    core_area: f.quantity("area") | None = None  # type: ignore[valid-type]
+    core: Core | None = None
+    rating: InductorRating | None = None
+
+    @model_validator(mode="after")
+    def _losses_once(self) -> Inductor:
+        _together(self, "q", "q_at")
+        _either(self, "q", "resistance")
+        _either(self, "parallel_capacitance", "self_resonance")
+        return self
+
+
+class Resistor(Valued):
+    value: f.quantity_range("ohm")  # type: ignore[valid-type]
+    nominal: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    tolerance: f.tolerance("ohm") | None = None  # type: ignore[valid-type]
+    in_series: f.count(1, 10000, "units in series") | None = None  # type: ignore[valid-type]
+    in_parallel: f.count(1, 10000, "units in parallel") | None = None  # type: ignore[valid-type]
+    unit_tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
+    series_inductance: f.quantity("henry") | None = None  # type: ignore[valid-type]
+    rating: ResistorRating | None = None
+
+
+class Transformer(Table):
+    """An ideal transformer; magnetising and leakage inductance are inductors of the design."""
+
+    primary: f.node_pair()  # type: ignore[valid-type]
+    secondary: f.node_pair()  # type: ignore[valid-type]
+    turns: Any
+
+    @model_validator(mode="after")
+    def _turns_are_two(self) -> Transformer:
+        turns = self.turns
+        good = isinstance(turns, list) and len(turns) == 2
+        if not good or not all(isinstance(n, (int, float)) and not isinstance(n, bool) and 0 < n <= 1e6 for n in turns):
+            raise f.fail("wrong-type", "turns = [primary, secondary], two positive numbers", "write [16, 2]")
+        return self
+
+
+class Coupling(Table):
+    """Coupling factor of two inductors, positive where both currents into the first nodes aid each other."""
+
+    of: f.names("two inductors")  # type: ignore[valid-type]
+    factor: f.number_range(-1.0, 1.0, "a coupling factor")  # type: ignore[valid-type]
+    tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
+
+    @model_validator(mode="after")
+    def _two_coils_within_one(self) -> Coupling:
+        if len(self.of) != 2 or self.of[0] == self.of[1]:
+            raise f.fail("bad-coupling", "of = two different inductors", "name both coils")
+        span = self.span()
+        if not (-1.0 < span.low <= span.high < 1.0):
+            raise f.fail("bad-coupling", "a factor between -1 and 1, tolerance included", "reduce it")
+        return self
+
+    def span(self) -> Span:
+        """Smallest, nominal (middle of a range) and largest factor."""
+        return span_of(self.factor, None, self.tolerance, middle="arithmetic")
+
+
+class Spacing(Table):
+    """A gap or a surface between two nodes."""
+
+    between: f.node_pair()  # type: ignore[valid-type]
+    distance: f.quantity("metre")  # type: ignore[valid-type]
+    kind: f.choice("air", "surface", "board")  # type: ignore[valid-type]
+    field: f.choice("uneven", "even") = "uneven"  # type: ignore[valid-type]
+    coating: f.flag() = False  # type: ignore[valid-type]
+
+
+class Probe(Table):
+    """A measuring probe that will be connected between two nodes."""
+
+    between: f.node_pair()  # type: ignore[valid-type]
+    capacitance: f.quantity("farad")  # type: ignore[valid-type]
+    resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    rating: ProbeRating | None = None
+
+
+def _together(table: Table, *keys: str) -> None:
+    """All of these keys, or none."""
+    given = [key for key in keys if getattr(table, key) is not None]
+    if given and len(given) < len(keys):
+        missing = [key for key in keys if key not in given]
+        raise f.fail("missing-key", f"{' and '.join(missing)} beside {' and '.join(given)}", "give both or neither")
+
+
+def _either(table: Table, one: str, other: str) -> None:
+    """Not both of these keys."""
+    if getattr(table, one) is not None and getattr(table, other) is not None:
+        raise f.fail("conflicting-keys", f"either {one} or {other}", "remove one of the two")
+
+

@@ -1,0 +1,1 @@
+"""Ratings and derating policies: what a part may carry, and which document says so."""
