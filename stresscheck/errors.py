@@ -52,9 +52,7 @@ class Problem:
     def __str__(self) -> str:
         place = self.file if self.line is None else f"{self.file}:{self.line}"
         key = f" {self.key}:" if self.key else ""
-        return (
-            f"{place}:{key} [{self.code}] found {self.found}; expected {self.expected}; {self.repair}"
-        )
+        return f"{place}:{key} [{self.code}] found {self.found}; expected {self.expected}; {self.repair}"
 
 
 class InputError(Exception):

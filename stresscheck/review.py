@@ -8,15 +8,15 @@ from collections.abc import Callable, Sequence
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
+from stresscheck.caution_facts import capacitor_facts, node_facts
 from stresscheck.cautions.facts import CapacitorFact, Facts, NodeFact
 from stresscheck.cautions.registry import cautions_for
 from stresscheck.circuit.build import build
 from stresscheck.errors import CheckError, InputError, Problem
 from stresscheck.findings.assemble import StateFindings, find_all
-from stresscheck.findings.facts import capacitor_facts, node_facts
 from stresscheck.findings.finding import VERDICTS, Finding
 from stresscheck.findings.outlook import DriveReport, Resonance, drive_reports, resonances
-from stresscheck.limits.policy import Policy, load_policy
+from stresscheck.limits.policy import load_policy
 from stresscheck.report.record import SCHEMA, Accepted, DeratingMark, DesignMark, Review
 
 if TYPE_CHECKING:
@@ -157,7 +157,9 @@ def _accepted(
     """Accepted findings; one counts while its date hasn't passed and the finding exists."""
     ids = {finding.id for _, found in results for finding in found.findings}
     return tuple(
-        Accepted(item.finding, item.reason, item.by, item.until.isoformat(), item.finding in ids and today <= item.until)
+        Accepted(
+            item.finding, item.reason, item.by, item.until.isoformat(), item.finding in ids and today <= item.until
+        )
         for item in design.accept.values()
     )
 
@@ -178,9 +180,7 @@ def _facts(design: Design, results: list[tuple[Design, StateFindings]]) -> Facts
         for line in found.network.lines if found.network is not None else ():
             low.append(found.network.axes.items[line.frequency_axis].low)  # type: ignore[union-attr]
             high.append(found.network.axes.items[line.frequency_axis].high)  # type: ignore[union-attr]
-    return Facts(
-        tuple(nodes), tuple(capacitors), design.site.access, min(low, default=0.0), max(high, default=0.0)
-    )
+    return Facts(tuple(nodes), tuple(capacitors), design.site.access, min(low, default=0.0), max(high, default=0.0))
 
 
 __all__ = ["DriveReport", "Resonance", "resonances_of", "review", "verdict_of"]

@@ -5,9 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
-Floats = NDArray[np.float64]
+from stresscheck.arrays import Floats
 
 
 @dataclass(frozen=True, slots=True)

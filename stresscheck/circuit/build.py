@@ -88,9 +88,7 @@ class _Builder:
         series, parallel = part.in_series or 1, part.in_parallel or 1
         scale = parallel / series
         factor = 1.0 / part.q if part.q is not None else part.dissipation_factor
-        law = CapacitorLaw(
-            _curve(f"dissipation_factor of {name}", factor), _curve(f"esr of {name}", part.esr), scale
-        )
+        law = CapacitorLaw(_curve(f"dissipation_factor of {name}", factor), _curve(f"esr of {name}", part.esr), scale)
         axis = self._axis(f"capacitor.{name}.value", part.span())
         inductance = part.series_inductance
         if inductance is None and part.self_resonance is not None:
@@ -118,9 +116,7 @@ class _Builder:
             lossless = CapacitorLaw(_curve("", None), _curve("", None))
             self._branch(name, "parallel_capacitance", (first, second), lossless, float(capacitance))
         if part.parallel_resistance is not None:
-            self._branch(
-                name, "core_loss", (first, second), ResistorLaw(), float(part.parallel_resistance)
-            )
+            self._branch(name, "core_loss", (first, second), ResistorLaw(), float(part.parallel_resistance))
 
     def _resistor(self, name: str, part: Any) -> None:
         first, second = self.joints.pair(part.between)
@@ -129,9 +125,7 @@ class _Builder:
         if part.series_inductance is not None:
             inner = self.joints.inner(f"{name} (inside)")
             coil = InductorLaw(_curve("", None))
-            self._branch(
-                name, "series_inductance", (inner, second), coil, float(part.series_inductance) * scale
-            )
+            self._branch(name, "series_inductance", (inner, second), coil, float(part.series_inductance) * scale)
         axis = self._axis(f"resistor.{name}.value", part.span())
         self.branches.append(Branch(name, "main", first, inner, ResistorLaw(scale), axis))
 
@@ -153,14 +147,10 @@ class _Builder:
         for index, (name, drive) in enumerate(present):
             sources.append(self._source(index, name, drive, line_of[index]))
         groups = _groups([bands[group[0]] for group in members])
-        lines = tuple(
-            Line(axes[number], tuple(group), groups[number]) for number, group in enumerate(members)
-        )
+        lines = tuple(Line(axes[number], tuple(group), groups[number]) for number, group in enumerate(members))
         return tuple(sources), lines
 
-    def _lines(
-        self, present: list[tuple[str, Any]], bands: list[Any]
-    ) -> tuple[list[int], list[list[int]], list[int]]:
+    def _lines(self, present: list[tuple[str, Any]], bands: list[Any]) -> tuple[list[int], list[list[int]], list[int]]:
         """Drives with stated phase and the same band share a line; all others get one each."""
         line_of: list[int] = []
         members: list[list[int]] = []
@@ -188,9 +178,7 @@ class _Builder:
         branch = None
         if kind == "voltage":
             branch = len(self.branches)
-            self.branches.append(
-                Branch(name, "source", first, second, ResistorLaw(), None, ohm, drive=index)
-            )
+            self.branches.append(Branch(name, "source", first, second, ResistorLaw(), None, ohm, drive=index))
         elif drive.source_resistance is not None:
             self._branch(name, "source", (first, second), ResistorLaw(), ohm)
         known = basis if basis in ("available_power", "delivered_power") else "peak"

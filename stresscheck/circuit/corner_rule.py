@@ -17,10 +17,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
+from stresscheck.arrays import Complexes, Flags, Floats, Indices
 
 STEPS = 8
 """Angles tried: each is where the two corners that bind on either side are equal, so few are needed."""
@@ -72,11 +70,11 @@ class _Binding:
         return _Binding(empty, empty, empty)
 
     @staticmethod
-    def at(place: NDArray[np.intp], size: Floats, denominator: Complexes) -> _Binding:
-        d = np.take_along_axis(denominator[:, :, None], place, axis=1)[:, 0]
+    def at(place: Indices, size: Floats, denominator: Complexes) -> _Binding:
+        d = np.take_along_axis(denominator[:, :, None], place, axis=1)[:, 0].astype(np.complex128)
         return _Binding(np.take_along_axis(size, place, axis=1)[:, 0], d.real, d.imag)
 
-    def replaced(self, where: NDArray[np.bool_], by: _Binding) -> _Binding:
+    def replaced(self, where: Flags, by: _Binding) -> _Binding:
         return _Binding(
             np.where(where, by.size, self.size), np.where(where, by.re, self.re), np.where(where, by.im, self.im)
         )
@@ -92,7 +90,7 @@ def _meeting(below: _Binding, above: _Binding, left: Floats, right: Floats) -> F
     return np.where((angle > left) & (angle < right), angle, middle)
 
 
-def angle_arc(denominator: Complexes) -> tuple[Floats, Floats, NDArray[np.bool_]]:
+def angle_arc(denominator: Complexes) -> tuple[Floats, Floats, Flags]:
     """Arc (low, high) of angles t with Re(e^{-jt} D_v) > 0 at every corner, and whether there is one.
 
     The corners' directions must leave a gap of more than half a turn. Shapes [boxes].

@@ -16,14 +16,11 @@ from functools import lru_cache
 from math import comb
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.elimination import solve_batch
 from stresscheck.circuit.entries import Entry
 from stresscheck.circuit.tableau import Frame
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
 
 BASE = 0.41
 """Where along each entry the tableau is factored: off the middle, where a lossless resonance often sits."""
@@ -48,7 +45,7 @@ class Pieces:
 
     @property
     def count(self) -> int:
-        return self.omega.shape[1]
+        return int(self.omega.shape[1])
 
     def rows(self, values: Floats) -> Floats:
         """Repeat box values [boxes, ...] for each frequency: [boxes * count, ...]."""
@@ -107,7 +104,7 @@ def corners(
     """
     base = _base_matrix(form, found)
     grid = _grid(form, base, moving, rhs, outputs)[:, None]
-    denominator = _base_determinant(base, pieces, scaled)[:, None]
+    denominator: Complexes = _base_determinant(base, pieces, scaled)[:, None]
     for entry in moving:
         step = _steps(entry)
         fan = step.shape[1]
@@ -117,7 +114,7 @@ def corners(
         for _ in entry.places:
             grid, pivot = _apply(grid, change)
             denominator = denominator * pivot
-    numerator = grid * denominator[:, :, None, None]
+    numerator: Complexes = grid * denominator[:, :, None, None]
     fans = tuple(entry.degree + 1 for entry in moving)
     shape = (-1, pieces.count, *fans)
     denominator = denominator.reshape(shape)
@@ -172,9 +169,7 @@ def _base_determinant(base: Complexes, pieces: Pieces, scaled: int) -> Complexes
     return np.asarray((ratio * (pieces.omega / pieces.omega[:, :1]) ** scaled).reshape(-1))
 
 
-def _grid(
-    form: Frame, base: Complexes, moving: tuple[Entry, ...], rhs: Floats, outputs: Floats
-) -> Complexes:
+def _grid(form: Frame, base: Complexes, moving: tuple[Entry, ...], rhs: Floats, outputs: Floats) -> Complexes:
     """Responses of (entry currents, outputs) to (unit excitations of entry rows, sources) at the base."""
     position = {branch: n for n, branch in enumerate(form.branches)}
     places = [place for entry in moving for place in entry.places]

@@ -5,11 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Floats
 from stresscheck.errors import CheckError
-
-Floats = NDArray[np.float64]
 
 
 @dataclass(frozen=True, slots=True)

@@ -9,8 +9,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Floats
 from stresscheck.circuit.corner_rule import corner_rule
 from stresscheck.circuit.corners import Pieces, corners, flat
 from stresscheck.circuit.elimination import solve_batch
@@ -18,8 +18,6 @@ from stresscheck.circuit.entries import direct_entries
 from stresscheck.circuit.network import GROUND, Network
 from stresscheck.circuit.tableau import Frame, excitation, frame
 from stresscheck.errors import CheckError
-
-Floats = NDArray[np.float64]
 
 MARGIN = 1e-6
 """Relative margin of bounds for rounding."""
@@ -73,7 +71,9 @@ def direct(network: Network, points: Floats) -> Direct:
         row = form.row(position[entry.places[0][0]])
         matrix[:, row, row] -= entry.low
     rhs = excitation(form, tuple(range(len(network.sources))), direct=True).sum(axis=1, keepdims=True)
-    x = solve_batch(matrix, np.repeat(rhs[None].astype(np.complex128), len(points), axis=0))[:, :, 0].real
+    x = solve_batch(matrix, np.repeat(rhs[None].astype(np.complex128), len(points), axis=0))[:, :, 0].real.astype(
+        np.float64
+    )
     return _read(network, form, x)
 
 
@@ -104,11 +104,8 @@ def _direct_frame(network: Network) -> Frame:
     for source in network.sources:
         if source.branch is None and source.dc != 0.0 and group[source.first] != group[source.second]:
             raise CheckError(f"the direct current of {source.name} has no path")
-    grounded = []
-    for number in sorted(set(group)):
-        if number != group[GROUND]:
-            grounded.append(group.index(number))
-    return frame(network, carrying(network), tuple(grounded))
+    grounded = tuple(group.index(number) for number in sorted(set(group)) if number != group[GROUND])
+    return frame(network, carrying(network), grounded)
 
 
 def _difference_readings(network: Network, form: Frame) -> Floats:

@@ -8,9 +8,8 @@ partial pivoting, and those that fail there too come out as NaN.
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
-Complexes = NDArray[np.complex128]
+from stresscheck.arrays import Complexes, Flags, Floats
 
 MOST_UNKNOWNS = 6
 BLOCK = 2048
@@ -46,9 +45,7 @@ def solve_columns(matrix: Complexes, rhs: Complexes) -> Complexes:
         x = _eliminate(matrix.copy(), rhs.copy())
         doubtful = _doubtful(matrix, rhs, x)
     if doubtful.any():
-        again = _with_pivoting(
-            matrix[:, :, doubtful].transpose(2, 0, 1), rhs[:, :, doubtful].transpose(2, 0, 1)
-        )
+        again = _with_pivoting(matrix[:, :, doubtful].transpose(2, 0, 1), rhs[:, :, doubtful].transpose(2, 0, 1))
         x[:, :, doubtful] = again.transpose(1, 2, 0)
     return x
 
@@ -69,7 +66,7 @@ def _eliminate(a: Complexes, b: Complexes) -> Complexes:
     return b
 
 
-def _doubtful(a: Complexes, b: Complexes, x: Complexes) -> NDArray[np.bool_]:
+def _doubtful(a: Complexes, b: Complexes, x: Complexes) -> Flags:
     """Which systems of the batch have a residual over the bound, or NaN."""
     residual = b - (a[:, :, None] * x).sum(axis=1)
     scale = _size(a).sum(axis=1)[:, None] * _size(x).max(axis=0) + _size(b)
@@ -77,7 +74,7 @@ def _doubtful(a: Complexes, b: Complexes, x: Complexes) -> NDArray[np.bool_]:
     return np.asarray(~good)
 
 
-def _size(z: Complexes) -> NDArray[np.float64]:
+def _size(z: Complexes) -> Floats:
     """|Re| + |Im|: as good as the absolute value for a bound, without a square root."""
     return np.asarray(np.abs(z.real) + np.abs(z.imag))
 

@@ -5,8 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Flags, Floats, Indices
 from stresscheck.circuit.corners import MOST_CORNERS, MOST_DEGREE, Corners, Pieces, corner_count, corners
 from stresscheck.circuit.entries import Entry, entries
 from stresscheck.circuit.influence import influence
@@ -23,11 +23,6 @@ from stresscheck.circuit.rules import (
 )
 from stresscheck.circuit.tableau import all_branches, excitation, frame, readings
 from stresscheck.errors import CheckError
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
-Indices = NDArray[np.intp]
-Flags = NDArray[np.bool_]
 
 MARGIN = 1e-6
 """Relative margin that every bound carries for rounding (tried on random networks: 6e-8 seen)."""
@@ -53,8 +48,8 @@ class Need:
 @dataclass(frozen=True, slots=True)
 class OutputGroup:
     """Outputs that depend on the same entries, with their corners. `rows`: their numbers in `readings` order;
-    `combined`: their numerators under the line's drives, [boxes, frequencies, *fans, outputs]; `ports`: the branches whose unit
-    series voltages are the columns of `corners` behind the sources."""
+    `combined`: their numerators under the line's drives, [boxes, frequencies, *fans, outputs]; `ports`: the branches
+    whose unit series voltages are the columns of `corners` behind the sources."""
 
     rows: Indices
     corners: Corners
@@ -78,9 +73,7 @@ class LineBounds:
     groups: tuple[OutputGroup, ...]
 
 
-def line_bounds(
-    network: Network, line: Line, lows: Floats, highs: Floats, need: Need | None = None
-) -> LineBounds:
+def line_bounds(network: Network, line: Line, lows: Floats, highs: Floats, need: Need | None = None) -> LineBounds:
     """Bound the responses asked for over boxes [lows, highs], each shape [boxes, axes], SI; all without `need`.
 
     Never below the true maximum over a box: each bound is the smallest that the rules of `rules` give, plus a
@@ -91,7 +84,11 @@ def line_bounds(
     pieces = Pieces.of(*omega, _degree(network))
     band = lows[:, line.frequency_axis], highs[:, line.frequency_axis]
     found = entries(
-        network, pieces.rows(lows), pieces.rows(highs), pieces.omega.reshape(-1), tuple(map(pieces.rows, band))
+        network,
+        pieces.rows(lows),
+        pieces.rows(highs),
+        pieces.omega.reshape(-1),
+        (pieces.rows(band[0]), pieces.rows(band[1])),
     )
     groups = _groups(network, line, found, pieces, lows, highs, _rows_to_solve(network, line, need))
     scale = _single_level(network, line, highs)
@@ -99,7 +96,9 @@ def line_bounds(
     bound = np.full((len(lows), outputs), np.inf)
     delivered = network.sources[line.sources[0]].basis == "delivered_power"
     ohm = _resistance(network, found, pieces)
-    wanted = np.concatenate([need.outputs[: outputs - len(line.sources)], need.outputs[-len(network.sources):][list(line.sources)]])
+    wanted = np.concatenate(
+        [need.outputs[: outputs - len(line.sources)], need.outputs[-len(network.sources) :][list(line.sources)]]
+    )
     for group in groups:
         if delivered:
             own = network.sources[line.sources[0]].branch
@@ -150,9 +149,7 @@ def _groups(
             raise CheckError(
                 f"{len(mine)} impedances vary at once; the proof takes at most {MOST_CORNERS.bit_length() - 1}"
             )
-        ports = tuple(
-            e.places[0][0] for e in mine if e.degree == 1 and np.any(e.low.imag != e.high.imag)
-        )
+        ports = tuple(e.places[0][0] for e in mine if e.degree == 1 and np.any(e.low.imag != e.high.imag))
         port_rhs = np.zeros((form.size, len(ports)))
         for column, branch in enumerate(ports):
             port_rhs[form.row(branch), column] = 1.0
@@ -213,9 +210,7 @@ def _peak_level(basis: str, level: Floats, ohm: float, scale: float) -> Floats:
     return level * scale
 
 
-def _combined(
-    network: Network, line: Line, lows: Floats, highs: Floats, got: Corners, rows: Indices
-) -> Complexes:
+def _combined(network: Network, line: Line, lows: Floats, highs: Floats, got: Corners, rows: Indices) -> Complexes:
     """Numerators of a group's outputs under the line's drives, [boxes, frequencies, *fans, (picks,) outputs].
 
     One drive: unit level. Several: one more dimension with every combination of their smallest and largest levels.
@@ -223,9 +218,8 @@ def _combined(
     """
     sources = [network.sources[index] for index in line.sources]
     first = len(network.nodes) + 2 * len(network.branches)
-    if len(sources) == 1:
-        levels = np.ones((len(lows), 1, 1), dtype=np.complex128)
-    else:
+    levels: Complexes = np.ones((len(lows), 1, 1), dtype=np.complex128)
+    if len(sources) > 1:
         levels = _level_picks(network, line, lows, highs)
     numerator = got.numerator[..., : len(sources)]
     picks = []
@@ -235,7 +229,7 @@ def _combined(
         for place, source in enumerate(sources):
             if source.branch is None:
                 at = np.flatnonzero(rows == first + place)
-                total[..., at] += (level[..., place] * got.denominator[..., None])
+                total[..., at] += level[..., place] * got.denominator[..., None]
         picks.append(total)
     return picks[0] if len(picks) == 1 else np.stack(picks, axis=-2)
 
@@ -273,9 +267,7 @@ def _by_currents(network: Network, line: Line, bound: Floats) -> None:
                 n for n, b in enumerate(network.branches)
                 if n != source.branch and (b.first == node) != (b.second == node)
             ]  # fmt: skip
-            injected = any(
-                s.branch is None and node in (s.first, s.second) for s in network.sources if s is not source
-            )
+            injected = any(s.branch is None and node in (s.first, s.second) for s in network.sources if s is not source)
             if node == GROUND or injected:
                 continue
             total = bound[:, others].sum(axis=1)

@@ -5,13 +5,10 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.laws import CapacitorLaw
 from stresscheck.circuit.network import Coupling, Network
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
 
 
 @dataclass(frozen=True, slots=True)
@@ -51,9 +48,10 @@ def entries(
     for index, branch in enumerate(network.branches):
         if branch.axis is None:
             fixed = np.full(len(lows), branch.fixed)
-            value, moved = (fixed, fixed), ()
+            value = (fixed, fixed)
         else:
-            value, moved = (lows[:, branch.axis], highs[:, branch.axis]), (branch.axis,)
+            value = (lows[:, branch.axis], highs[:, branch.axis])
+        moved = () if branch.axis is None else (branch.axis,)
         u = value
         if isinstance(branch.law, CapacitorLaw):
             u = (1.0 / value[1], 1.0 / value[0])
@@ -69,21 +67,20 @@ def direct_entries(network: Network, lows: Floats, highs: Floats) -> tuple[Entry
     for index, branch in enumerate(network.branches):
         if branch.axis is None:
             fixed = np.full(len(lows), branch.fixed)
-            ends, moved = (branch.law.dc_ohm(fixed), branch.law.dc_ohm(fixed)), ()
+            ends = (branch.law.dc_ohm(fixed), branch.law.dc_ohm(fixed))
         else:
             ends = (branch.law.dc_ohm(lows[:, branch.axis]), branch.law.dc_ohm(highs[:, branch.axis]))
-            moved = (branch.axis,)
+        moved = () if branch.axis is None else (branch.axis,)
         if ends[0] is not None and ends[1] is not None:
             found.append(Entry(((index, index),), ends[0] + 0j, ends[1] + 0j, moved))
     return tuple(found)
 
 
-def _mutual(
-    network: Network, coupling: Coupling, lows: Floats, highs: Floats, omega: Floats
-) -> Entry:
+def _mutual(network: Network, coupling: Coupling, lows: Floats, highs: Floats, omega: Floats) -> Entry:
     """j omega k sqrt(L1 L2), k and the root taken as independent of each other and of the coils' own entries."""
     one, two = network.branches[coupling.first].axis, network.branches[coupling.second].axis
-    assert one is not None and two is not None
+    assert one is not None
+    assert two is not None
     least = np.sqrt(lows[:, one] * lows[:, two])
     most = np.sqrt(highs[:, one] * highs[:, two])
     k_low, k_high = lows[:, coupling.axis], highs[:, coupling.axis]

@@ -8,13 +8,10 @@ what is zero there is zero for every value (with probability one), what isn't co
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Flags, Floats
 from stresscheck.circuit.entries import Entry
 from stresscheck.circuit.tableau import Frame
-
-Floats = NDArray[np.float64]
-Flags = NDArray[np.bool_]
 
 SEED = 5
 ZERO = 1e-9

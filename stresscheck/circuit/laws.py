@@ -11,12 +11,10 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.curves import LossCurve
 
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
 Segment = tuple[Complexes, Complexes]
 Band = tuple[Floats, Floats]
 """Smallest and largest frequency of a piece of the band [Hz]."""
@@ -43,9 +41,7 @@ class ResistorLaw:
         """z [ohm] at each point, from R [ohm] and omega [rad/s], shapes [P]."""
         return self.scale * value + 0j * omega
 
-    def segments(
-        self, value: tuple[Floats, Floats], omega: Floats, piece: Band
-    ) -> tuple[Segment, ...]:
+    def segments(self, value: tuple[Floats, Floats], omega: Floats, piece: Band) -> tuple[Segment, ...]:
         """One segment from the smallest to the largest resistance."""
         return ((self.scale * value[0] + 0j, self.scale * value[1] + 0j),)
 
@@ -76,9 +72,7 @@ class CapacitorLaw:
         reactance = 1.0 / (omega * value * self.scale)
         return self.esr.at(hertz) / self.scale + (self.loss_factor.at(hertz) - 1j) * reactance
 
-    def segments(
-        self, value: tuple[Floats, Floats], omega: Floats, piece: Band
-    ) -> tuple[Segment, ...]:
+    def segments(self, value: tuple[Floats, Floats], omega: Floats, piece: Band) -> tuple[Segment, ...]:
         """One straight line in 1/C; a loss that moves with frequency is a segment of its own."""
         least, most = 1.0 / (omega * value[1] * self.scale), 1.0 / (omega * value[0] * self.scale)
         loss_low, loss_high = self.loss_factor.range(*piece)
@@ -114,9 +108,7 @@ class InductorLaw:
         """z [ohm] at each point, from L [H] and omega [rad/s], shapes [P]."""
         return self.resistance.at(omega / TAU) + (self.kappa + 1j * omega) * value
 
-    def segments(
-        self, value: tuple[Floats, Floats], omega: Floats, piece: Band
-    ) -> tuple[Segment, ...]:
+    def segments(self, value: tuple[Floats, Floats], omega: Floats, piece: Band) -> tuple[Segment, ...]:
         """One straight line in L; a resistance that moves with frequency is a segment of its own."""
         low, high = self.resistance.range(*piece)
         slope = self.kappa + 1j * omega
@@ -132,7 +124,7 @@ class InductorLaw:
         """Resistance at omega = 0; NaN where only a curve is declared, for it is silent there."""
         if not self.resistance.constant:
             return np.full_like(value, np.nan)
-        return self.resistance.value[0] + self.kappa * value
+        return np.asarray(self.resistance.value[0] + self.kappa * value)
 
     def check_band(self, low: float, high: float) -> None:
         """Raise CheckError where the resistance isn't stated over the whole band [Hz]."""

@@ -9,15 +9,12 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.laws import TAU, CapacitorLaw, InductorLaw
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.nodal import mutual_henry
 from stresscheck.circuit.tableau import all_branches, frame
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
 
 ROUNDS = 4
 """Times a loss that moves with frequency is read again at the mode's own frequency."""

@@ -9,14 +9,11 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.elimination import solve_columns
 from stresscheck.circuit.laws import TAU
 from stresscheck.circuit.network import GROUND, Line, Network
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
 
 
 @dataclass(frozen=True, slots=True)
@@ -159,9 +156,7 @@ class _Layout:
                 ampere[index] = x[self.row[index]]
             else:
                 ampere[index] = (volt[index] - emf[index][:, None]) * self.siemens[index]
-        return Responses(
-            volt.transpose(2, 0, 1), ampere.transpose(2, 0, 1), node.transpose(2, 0, 1), ohm, omega
-        )
+        return Responses(volt.transpose(2, 0, 1), ampere.transpose(2, 0, 1), node.transpose(2, 0, 1), ohm, omega)
 
 
 def _stamp_pair(out: Complexes, ends: list[tuple[int, float]], row: int, ratio: float) -> None:

@@ -5,14 +5,11 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.network import Line, Network, Source
 from stresscheck.circuit.nodal import Responses, respond
 from stresscheck.errors import CheckError
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,14 +45,12 @@ def phasors(network: Network, points: Floats, line: Line) -> Phasors:
     )
 
 
-def amplitude(
-    network: Network, index: int, points: Floats, unit: Responses, column: int
-) -> Complexes:
+def amplitude(network: Network, index: int, points: Floats, unit: Responses, column: int) -> Complexes:
     """Complex peak level of one source at each point [V or A], shape [points]."""
     source = network.sources[index]
     level = points[:, source.level_axis]
     if source.basis == "peak":
-        return level * source.level_scale * np.exp(1j * source.phase)
+        return np.asarray(level * source.level_scale * np.exp(1j * source.phase))
     if source.basis == "available_power":
         return np.sqrt(8.0 * level * source.ohm) + 0j
     return np.sqrt(level / _unit_watt(source, unit, column)) + 0j
@@ -83,4 +78,4 @@ def _unit_watt(source: Source, unit: Responses, column: int) -> Floats:
 
 def _combine(unit: Complexes, level: Complexes) -> Complexes:
     """Sum over the line's sources: [points, rows, sources] times [points, sources]."""
-    return np.einsum("prs,ps->pr", unit[:, :, : level.shape[1]], level)
+    return np.asarray(np.einsum("prs,ps->pr", unit[:, :, : level.shape[1]], level))

@@ -5,8 +5,8 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Flags, Floats, Indices
 from stresscheck.circuit.corner_rule import corner_rule
 from stresscheck.circuit.corners import flat
 from stresscheck.circuit.entries import Entry
@@ -16,10 +16,6 @@ from stresscheck.circuit.network import Network
 if TYPE_CHECKING:
     from stresscheck.circuit.enclosure import OutputGroup
 
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
-Indices = NDArray[np.intp]
-Flags = NDArray[np.bool_]
 
 LOOSE = 1.01
 """A bound above its largest corner by more than this is tried again around the middle of the box."""
@@ -107,7 +103,7 @@ def by_power(network: Network, source: int, bound: Floats, ohm: tuple[Floats, Fl
 
 
 def chain_root(chain: list[int], branch: int, ohm: tuple[Floats, Floats]) -> Floats:
-    """Bound of sqrt(R) I of a resistance in series with a unit drive: largest sqrt(R)/(R + R_others) on its interval."""
+    """Bound of sqrt(R) I of a resistance in series with a unit drive: largest sqrt(R)/(R + other R) on its interval."""
     others = ohm[0][:, [n for n in chain if n != branch]].sum(axis=1)
     r = np.clip(others, ohm[0][:, branch], ohm[1][:, branch])
     with np.errstate(divide="ignore", invalid="ignore"):
@@ -156,9 +152,7 @@ def per_watt(combined: Complexes, rows: Indices, ohm: Floats, own: int | None) -
         return np.asarray(1.0 / np.sqrt(total))
 
 
-def root_bound(
-    group: OutputGroup, branch: int, entry: Entry, ends: tuple[Floats, Floats]
-) -> Floats:
+def root_bound(group: OutputGroup, branch: int, entry: Entry, ends: tuple[Floats, Floats]) -> Floats:
     """Bound of sqrt(w) I over boxes, w going from ends[0] to ends[1] along the branch's own entry (1/C, L or R).
 
     N_I doesn't depend on the branch's own impedance, and D is linear in w. In s = sqrt(w), response = N s / D with D

@@ -3,18 +3,14 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats, Indices
 from stresscheck.circuit.corner_rule import corner_rule
 from stresscheck.circuit.corners import flat
 from stresscheck.circuit.enclosure import LineBounds, OutputGroup
 from stresscheck.circuit.entries import Entry
 from stresscheck.circuit.laws import CapacitorLaw
 from stresscheck.circuit.network import Line, Network
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
-Indices = NDArray[np.intp]
 
 STEPS = 8
 WORTH = 0.99
@@ -122,6 +118,4 @@ def _span(denominator: Complexes) -> Floats:
     """Angle that the denominator's corners span [rad]: over half a turn no bound is found."""
     angle = np.sort(np.angle(denominator), axis=1)
     following = np.concatenate([angle[:, 1:], angle[:, :1] + 2.0 * np.pi], axis=1)
-    return 2.0 * np.pi - (following - angle).max(axis=1)
-
-
+    return np.asarray(2.0 * np.pi - (following - angle).max(axis=1))

@@ -12,16 +12,12 @@ Source: circuit theory (compensation theorem).
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats, Indices
 from stresscheck.circuit.laws import TAU, CapacitorLaw, InductorLaw
 from stresscheck.circuit.network import Line, Network
 from stresscheck.circuit.nodal import respond
 from stresscheck.circuit.phasors import amplitude
-
-Floats = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
-Indices = NDArray[np.intp]
 
 
 def branch_on_axis(network: Network, axis: int) -> int | None:
@@ -43,23 +39,19 @@ def reactive_axes(network: Network) -> tuple[int, ...]:
     )
 
 
-def stationary_values(
-    network: Network, line: Line, points: Floats, axis: int, outputs: Indices
-) -> Floats:
+def stationary_values(network: Network, line: Line, points: Floats, axis: int, outputs: Indices) -> Floats:
     """Values on an element's axis where a response is stationary, and where the element is tuned: [points, 3].
 
     outputs: for each point the response's number in the order of the tableau's readings (branch currents, branch
-    voltages, node voltages). Values may lie outside the box, and are NaN where there is none. Mutual inductances are held while a coil's value moves, so
-    for coupled coils the values are good guesses only.
+    voltages, node voltages). Values may lie outside the box, and are NaN where there is none. Mutual inductances are
+    held while a coil's value moves, so for coupled coils the values are good guesses only.
     """
     branch = branch_on_axis(network, axis)
     if branch is None:
         return np.full((len(points), 3), np.nan)
     seen = respond(network, points, line, ports=(branch,))
     rows = np.arange(len(points))
-    level = np.stack(
-        [amplitude(network, s, points, seen, column) for column, s in enumerate(line.sources)], axis=1
-    )
+    level = np.stack([amplitude(network, s, points, seen, column) for column, s in enumerate(line.sources)], axis=1)
     everything = np.concatenate([seen.ampere, seen.volt, seen.node], axis=1)[rows, outputs]
     sources = len(line.sources)
     y0 = np.einsum("ps,ps->p", everything[:, :sources], level)

@@ -32,11 +32,11 @@ PART_KINDS = ("drive", "capacitor", "inductor", "resistor", "transformer", "coup
 class Site(Table):
     """Where the circuit runs, and who can reach it."""
 
-    ambient: f.quantity_range("kelvin") | None = None  # type: ignore[valid-type]
-    altitude: f.quantity("altitude") | None = None  # type: ignore[valid-type]
-    pollution_degree: f.count(1, 3, "a pollution degree") = 2  # type: ignore[valid-type]
-    reachable: f.names("nodes") | None = None  # type: ignore[valid-type]
-    access: f.choice("ordinary", "skilled") = "ordinary"  # type: ignore[valid-type]
+    ambient: f.quantity_range("kelvin") | None = None
+    altitude: f.quantity("altitude") | None = None
+    pollution_degree: f.count(1, 3, "a pollution degree") = 2
+    reachable: f.names("nodes") | None = None
+    access: f.choice("ordinary", "skilled") = "ordinary"
 
     def ambient_span(self) -> Span | None:
         """Coldest, middle and hottest ambient temperature [K], None where none is declared."""
@@ -46,8 +46,8 @@ class Site(Table):
 class Gating(Table):
     """A drive that is switched on and off periodically."""
 
-    on: f.quantity("second")  # type: ignore[valid-type]
-    period: f.quantity("second")  # type: ignore[valid-type]
+    on: f.quantity("second")
+    period: f.quantity("second")
 
     @model_validator(mode="after")
     def _on_within_period(self) -> Gating:
@@ -59,22 +59,22 @@ class Gating(Table):
 class Drive(Table):
     """A voltage drive (level in V, or by power) or a current drive (level in A)."""
 
-    between: f.node_pair()  # type: ignore[valid-type]
+    between: f.node_pair()
     peak: Any = None
     rms: Any = None
     peak_to_peak: Any = None
-    available_power: f.quantity("watt") | None = None  # type: ignore[valid-type]
-    delivered_power: f.quantity("watt") | None = None  # type: ignore[valid-type]
-    frequency: f.quantity_range("hertz")  # type: ignore[valid-type]
-    phase: f.number(-360.0, 360.0, "a phase in degrees") | None = None  # type: ignore[valid-type]
-    waveform: f.choice("sine", "square", "triangle") = "sine"  # type: ignore[valid-type]
+    available_power: f.quantity("watt") | None = None
+    delivered_power: f.quantity("watt") | None = None
+    frequency: f.quantity_range("hertz")
+    phase: f.number(-360.0, 360.0, "a phase in degrees") | None = None
+    waveform: f.choice("sine", "square", "triangle") = "sine"
     harmonics: Any = None
-    duty: f.number(0.001, 0.999, "a duty") | None = None  # type: ignore[valid-type]
+    duty: f.number(0.001, 0.999, "a duty") | None = None
     offset: Any = None
-    tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
-    source_resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    tolerance: f.tolerance(None) | None = None
+    source_resistance: f.quantity("ohm") | None = None
     gating: Gating | None = None
-    any_waveform: f.flag() = False  # type: ignore[valid-type]
+    any_waveform: f.flag() = False
     rating: DriveRating | None = None
 
     @model_validator(mode="before")
@@ -157,16 +157,16 @@ class State(Table):
     """A changed circuit: `change` maps paths to new values, or a part to "open" or "short"."""
 
     change: Mapping[str, Any] = Field(default_factory=dict)
-    kind: f.choice("operating", "fault") = "operating"  # type: ignore[valid-type]
-    frequency: f.quantity_range("hertz") | None = None  # type: ignore[valid-type]
+    kind: f.choice("operating", "fault") = "operating"
+    frequency: f.quantity_range("hertz") | None = None
 
 
 class Accept(Table):
     """A finding that named people take responsibility for until a date."""
 
-    finding: f.words(200, "the id of a finding")  # type: ignore[valid-type]
-    reason: f.words(1000, "a reason")  # type: ignore[valid-type]
-    by: f.words(200, "who takes responsibility")  # type: ignore[valid-type]
+    finding: f.words(200, "the id of a finding")
+    reason: f.words(1000, "a reason")
+    by: f.words(200, "who takes responsibility")
     until: datetime.date
 
 
@@ -175,27 +175,27 @@ def _frozen(value: Mapping[str, Any]) -> Mapping[str, Any]:
 
 
 def _tables(model: type[Table]) -> Any:
-    return Annotated[Mapping[str, model], AfterValidator(_frozen), Field(default_factory=dict)]  # type: ignore[valid-type]
+    return Annotated[Mapping[str, model], AfterValidator(_frozen), Field(default_factory=dict)]
 
 
 class Design(Table):
     """One design file. `in_state(name)` gives the circuit of a state; the file as written is the state "normal"."""
 
-    title: f.words(200, "a title")  # type: ignore[valid-type]
-    revision: f.words(40, "a revision") | None = None  # type: ignore[valid-type]
-    derating: f.words(200, "a derating policy")  # type: ignore[valid-type]
-    notes: f.words(20000, "notes") | None = None  # type: ignore[valid-type]
+    title: f.words(200, "a title")
+    revision: f.words(40, "a revision") | None = None
+    derating: f.words(200, "a derating policy")
+    notes: f.words(20000, "notes") | None = None
     site: Site = Field(default_factory=Site)
-    drive: _tables(Drive)  # type: ignore[valid-type]
-    capacitor: _tables(Capacitor)  # type: ignore[valid-type]
-    inductor: _tables(Inductor)  # type: ignore[valid-type]
-    resistor: _tables(Resistor)  # type: ignore[valid-type]
-    transformer: _tables(Transformer)  # type: ignore[valid-type]
-    coupling: _tables(Coupling)  # type: ignore[valid-type]
-    spacing: _tables(Spacing)  # type: ignore[valid-type]
-    probe: _tables(Probe)  # type: ignore[valid-type]
-    state: _tables(State)  # type: ignore[valid-type]
-    accept: _tables(Accept)  # type: ignore[valid-type]
+    drive: _tables(Drive)
+    capacitor: _tables(Capacitor)
+    inductor: _tables(Inductor)
+    resistor: _tables(Resistor)
+    transformer: _tables(Transformer)
+    coupling: _tables(Coupling)
+    spacing: _tables(Spacing)
+    probe: _tables(Probe)
+    state: _tables(State)
+    accept: _tables(Accept)
 
     _file: str = PrivateAttr(default="design.toml")
     _folder: Path | None = PrivateAttr(default=None)

@@ -19,65 +19,65 @@ class Table(BaseModel):
 class Rating(Table):
     """What the maker states. Each figure names its basis; `source` says where the figures stand."""
 
-    source: f.words(300, "where the ratings stand") | None = None  # type: ignore[valid-type]
+    source: f.words(300, "where the ratings stand") | None = None
 
 
 class CapacitorRating(Rating):
-    voltage_dc: f.rating("volt") | None = None  # type: ignore[valid-type]
-    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
-    voltage_peak_to_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
-    voltage_rms: f.rating("volt") | None = None  # type: ignore[valid-type]
-    current_peak: f.rating("ampere") | None = None  # type: ignore[valid-type]
-    current_rms: f.rating("ampere") | None = None  # type: ignore[valid-type]
-    dissipation: f.rating("watt") | None = None  # type: ignore[valid-type]
-    reactive_power: f.rating("var") | None = None  # type: ignore[valid-type]
-    slew_rate: f.rating("volt_per_second") | None = None  # type: ignore[valid-type]
-    temperature: f.quantity("kelvin") | None = None  # type: ignore[valid-type]
+    voltage_dc: f.rating("volt") | None = None
+    voltage_peak: f.rating("volt") | None = None
+    voltage_peak_to_peak: f.rating("volt") | None = None
+    voltage_rms: f.rating("volt") | None = None
+    current_peak: f.rating("ampere") | None = None
+    current_rms: f.rating("ampere") | None = None
+    dissipation: f.rating("watt") | None = None
+    reactive_power: f.rating("var") | None = None
+    slew_rate: f.rating("volt_per_second") | None = None
+    temperature: f.quantity("kelvin") | None = None
 
 
 class InductorRating(Rating):
-    current_peak: f.rating("ampere") | None = None  # type: ignore[valid-type]
-    current_rms: f.rating("ampere") | None = None  # type: ignore[valid-type]
-    saturation_current: f.rating("ampere") | None = None  # type: ignore[valid-type]
-    saturation_drop: f.number(0.0, 1.0, "drop of inductance at saturation_current") | None = None  # type: ignore[valid-type]
-    voltage_dc: f.rating("volt") | None = None  # type: ignore[valid-type]
-    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
-    voltage_rms: f.rating("volt") | None = None  # type: ignore[valid-type]
-    flux_density: f.rating("tesla") | None = None  # type: ignore[valid-type]
-    dissipation: f.rating("watt") | None = None  # type: ignore[valid-type]
-    temperature: f.quantity("kelvin") | None = None  # type: ignore[valid-type]
+    current_peak: f.rating("ampere") | None = None
+    current_rms: f.rating("ampere") | None = None
+    saturation_current: f.rating("ampere") | None = None
+    saturation_drop: f.number(0.0, 1.0, "drop of inductance at saturation_current") | None = None
+    voltage_dc: f.rating("volt") | None = None
+    voltage_peak: f.rating("volt") | None = None
+    voltage_rms: f.rating("volt") | None = None
+    flux_density: f.rating("tesla") | None = None
+    dissipation: f.rating("watt") | None = None
+    temperature: f.quantity("kelvin") | None = None
 
 
 class ResistorRating(Rating):
-    dissipation: f.rating("watt") | None = None  # type: ignore[valid-type]
-    voltage_dc: f.rating("volt") | None = None  # type: ignore[valid-type]
-    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
-    voltage_rms: f.rating("volt") | None = None  # type: ignore[valid-type]
-    pulse_energy: f.rating("joule") | None = None  # type: ignore[valid-type]
-    temperature: f.quantity("kelvin") | None = None  # type: ignore[valid-type]
+    dissipation: f.rating("watt") | None = None
+    voltage_dc: f.rating("volt") | None = None
+    voltage_peak: f.rating("volt") | None = None
+    voltage_rms: f.rating("volt") | None = None
+    pulse_energy: f.rating("joule") | None = None
+    temperature: f.quantity("kelvin") | None = None
 
 
 class DriveRating(Rating):
-    current_peak: f.rating("ampere") | None = None  # type: ignore[valid-type]
-    current_rms: f.rating("ampere") | None = None  # type: ignore[valid-type]
-    power: f.rating("watt") | None = None  # type: ignore[valid-type]
+    current_peak: f.rating("ampere") | None = None
+    current_rms: f.rating("ampere") | None = None
+    power: f.rating("watt") | None = None
 
 
 class ProbeRating(Rating):
-    voltage_peak: f.rating("volt") | None = None  # type: ignore[valid-type]
+    voltage_peak: f.rating("volt") | None = None
 
 
 class Valued(Table):
     """A part with a value between two nodes."""
 
-    between: f.node_pair()  # type: ignore[valid-type]
+    between: f.node_pair()
     value: Any
     nominal: Any = None
     tolerance: Any = None
-    family: f.words(80, "a family of parts") | None = None  # type: ignore[valid-type]
-    temperature_coefficient: f.quantity("per_kelvin") | None = None  # type: ignore[valid-type]
-    thermal_resistance: f.quantity("kelvin_per_watt") | None = None  # type: ignore[valid-type]
-    part: f.words(200, "a part of a parts file") | None = None  # type: ignore[valid-type]
+    family: f.words(80, "a family of parts") | None = None
+    temperature_coefficient: f.quantity("per_kelvin") | None = None
+    thermal_resistance: f.quantity("kelvin_per_watt") | None = None
+    part: f.words(200, "a part of a parts file") | None = None
 
     @model_validator(mode="after")
     def _span_is_positive(self) -> Valued:
@@ -96,19 +96,19 @@ class Valued(Table):
 
 
 class Capacitor(Valued):
-    value: f.quantity_range("farad")  # type: ignore[valid-type]
-    nominal: f.quantity("farad") | None = None  # type: ignore[valid-type]
-    tolerance: f.tolerance("farad") | None = None  # type: ignore[valid-type]
-    dissipation_factor: f.loss_factor() | None = None  # type: ignore[valid-type]
-    esr: f.loss("ohm") | None = None  # type: ignore[valid-type]
-    q: f.number(1.0, 1e7, "a quality factor") | None = None  # type: ignore[valid-type]
-    q_at: f.quantity("hertz") | None = None  # type: ignore[valid-type]
-    in_series: f.count(1, 10000, "units in series") | None = None  # type: ignore[valid-type]
-    in_parallel: f.count(1, 10000, "units in parallel") | None = None  # type: ignore[valid-type]
-    unit_tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
-    series_inductance: f.quantity("henry") | None = None  # type: ignore[valid-type]
-    self_resonance: f.quantity("hertz") | None = None  # type: ignore[valid-type]
-    leakage_resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    value: f.quantity_range("farad")
+    nominal: f.quantity("farad") | None = None
+    tolerance: f.tolerance("farad") | None = None
+    dissipation_factor: f.loss_factor() | None = None
+    esr: f.loss("ohm") | None = None
+    q: f.number(1.0, 1e7, "a quality factor") | None = None
+    q_at: f.quantity("hertz") | None = None
+    in_series: f.count(1, 10000, "units in series") | None = None
+    in_parallel: f.count(1, 10000, "units in parallel") | None = None
+    unit_tolerance: f.tolerance(None) | None = None
+    series_inductance: f.quantity("henry") | None = None
+    self_resonance: f.quantity("hertz") | None = None
+    leakage_resistance: f.quantity("ohm") | None = None
     rating: CapacitorRating | None = None
 
     @model_validator(mode="after")
@@ -123,40 +123,40 @@ class Capacitor(Valued):
 class Winding(Table):
     """How an inductor is wound: read and checked; its losses aren't computed from it yet."""
 
-    wire_diameter: f.quantity("metre") | None = None  # type: ignore[valid-type]
-    strands: f.count(1, 100000, "strands") | None = None  # type: ignore[valid-type]
-    strand_diameter: f.quantity("metre") | None = None  # type: ignore[valid-type]
-    turns: f.number(0.5, 1e5, "turns") | None = None  # type: ignore[valid-type]
-    layers: f.count(1, 1000, "layers") | None = None  # type: ignore[valid-type]
-    coil_diameter: f.quantity("metre") | None = None  # type: ignore[valid-type]
-    length: f.quantity("metre") | None = None  # type: ignore[valid-type]
-    turn_voltage: f.quantity("volt") | None = None  # type: ignore[valid-type]
-    layer_voltage: f.quantity("volt") | None = None  # type: ignore[valid-type]
+    wire_diameter: f.quantity("metre") | None = None
+    strands: f.count(1, 100000, "strands") | None = None
+    strand_diameter: f.quantity("metre") | None = None
+    turns: f.number(0.5, 1e5, "turns") | None = None
+    layers: f.count(1, 1000, "layers") | None = None
+    coil_diameter: f.quantity("metre") | None = None
+    length: f.quantity("metre") | None = None
+    turn_voltage: f.quantity("volt") | None = None
+    layer_voltage: f.quantity("volt") | None = None
 
 
 class Core(Table):
     """Coefficients of the core loss P_v = k f^a B^b, W/m^3 with f in Hz and B in T: read and checked only yet."""
 
-    k: f.number(0.0, 1e12, "the Steinmetz coefficient k, W/m^3")  # type: ignore[valid-type]
-    a: f.number(0.5, 3.0, "the Steinmetz exponent of frequency")  # type: ignore[valid-type]
-    b: f.number(0.5, 5.0, "the Steinmetz exponent of flux density")  # type: ignore[valid-type]
-    volume: f.quantity("volume")  # type: ignore[valid-type]
-    source: f.words(300, "where the coefficients stand") | None = None  # type: ignore[valid-type]
+    k: f.number(0.0, 1e12, "the Steinmetz coefficient k, W/m^3")
+    a: f.number(0.5, 3.0, "the Steinmetz exponent of frequency")
+    b: f.number(0.5, 5.0, "the Steinmetz exponent of flux density")
+    volume: f.quantity("volume")
+    source: f.words(300, "where the coefficients stand") | None = None
 
 
 class Inductor(Valued):
-    value: f.quantity_range("henry")  # type: ignore[valid-type]
-    nominal: f.quantity("henry") | None = None  # type: ignore[valid-type]
-    tolerance: f.tolerance("henry") | None = None  # type: ignore[valid-type]
-    resistance: f.loss("ohm") | None = None  # type: ignore[valid-type]
-    q: f.number(1e-3, 1e7, "a quality factor") | None = None  # type: ignore[valid-type]
-    q_at: f.quantity("hertz") | None = None  # type: ignore[valid-type]
+    value: f.quantity_range("henry")
+    nominal: f.quantity("henry") | None = None
+    tolerance: f.tolerance("henry") | None = None
+    resistance: f.loss("ohm") | None = None
+    q: f.number(1e-3, 1e7, "a quality factor") | None = None
+    q_at: f.quantity("hertz") | None = None
     winding: Winding | None = None
-    parallel_resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
-    parallel_capacitance: f.quantity("farad") | None = None  # type: ignore[valid-type]
-    self_resonance: f.quantity("hertz") | None = None  # type: ignore[valid-type]
-    turns: f.number(0.5, 1e5, "turns") | None = None  # type: ignore[valid-type]
-    core_area: f.quantity("area") | None = None  # type: ignore[valid-type]
+    parallel_resistance: f.quantity("ohm") | None = None
+    parallel_capacitance: f.quantity("farad") | None = None
+    self_resonance: f.quantity("hertz") | None = None
+    turns: f.number(0.5, 1e5, "turns") | None = None
+    core_area: f.quantity("area") | None = None
     core: Core | None = None
     rating: InductorRating | None = None
 
@@ -169,21 +169,21 @@ class Inductor(Valued):
 
 
 class Resistor(Valued):
-    value: f.quantity_range("ohm")  # type: ignore[valid-type]
-    nominal: f.quantity("ohm") | None = None  # type: ignore[valid-type]
-    tolerance: f.tolerance("ohm") | None = None  # type: ignore[valid-type]
-    in_series: f.count(1, 10000, "units in series") | None = None  # type: ignore[valid-type]
-    in_parallel: f.count(1, 10000, "units in parallel") | None = None  # type: ignore[valid-type]
-    unit_tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
-    series_inductance: f.quantity("henry") | None = None  # type: ignore[valid-type]
+    value: f.quantity_range("ohm")
+    nominal: f.quantity("ohm") | None = None
+    tolerance: f.tolerance("ohm") | None = None
+    in_series: f.count(1, 10000, "units in series") | None = None
+    in_parallel: f.count(1, 10000, "units in parallel") | None = None
+    unit_tolerance: f.tolerance(None) | None = None
+    series_inductance: f.quantity("henry") | None = None
     rating: ResistorRating | None = None
 
 
 class Transformer(Table):
     """An ideal transformer; magnetising and leakage inductance are inductors of the design."""
 
-    primary: f.node_pair()  # type: ignore[valid-type]
-    secondary: f.node_pair()  # type: ignore[valid-type]
+    primary: f.node_pair()
+    secondary: f.node_pair()
     turns: Any
 
     @model_validator(mode="after")
@@ -198,9 +198,9 @@ class Transformer(Table):
 class Coupling(Table):
     """Coupling factor of two inductors, positive where both currents into the first nodes aid each other."""
 
-    of: f.names("two inductors")  # type: ignore[valid-type]
-    factor: f.number_range(-1.0, 1.0, "a coupling factor")  # type: ignore[valid-type]
-    tolerance: f.tolerance(None) | None = None  # type: ignore[valid-type]
+    of: f.names("two inductors")
+    factor: f.number_range(-1.0, 1.0, "a coupling factor")
+    tolerance: f.tolerance(None) | None = None
 
     @model_validator(mode="after")
     def _two_coils_within_one(self) -> Coupling:
@@ -219,19 +219,19 @@ class Coupling(Table):
 class Spacing(Table):
     """A gap or a surface between two nodes."""
 
-    between: f.node_pair()  # type: ignore[valid-type]
-    distance: f.quantity("metre")  # type: ignore[valid-type]
-    kind: f.choice("air", "surface", "board")  # type: ignore[valid-type]
-    field: f.choice("uneven", "even") = "uneven"  # type: ignore[valid-type]
-    coating: f.flag() = False  # type: ignore[valid-type]
+    between: f.node_pair()
+    distance: f.quantity("metre")
+    kind: f.choice("air", "surface", "board")
+    field: f.choice("uneven", "even") = "uneven"
+    coating: f.flag() = False
 
 
 class Probe(Table):
     """A measuring probe that will be connected between two nodes."""
 
-    between: f.node_pair()  # type: ignore[valid-type]
-    capacitance: f.quantity("farad")  # type: ignore[valid-type]
-    resistance: f.quantity("ohm") | None = None  # type: ignore[valid-type]
+    between: f.node_pair()
+    capacitance: f.quantity("farad")
+    resistance: f.quantity("ohm") | None = None
     rating: ProbeRating | None = None
 
 

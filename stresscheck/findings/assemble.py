@@ -8,8 +8,8 @@ from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Floats
 from stresscheck.circuit.build import build
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import check_levels
@@ -25,7 +25,6 @@ from stresscheck.limits.policy import Policy
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
 
-Floats = NDArray[np.float64]
 Stop = Callable[[bool], bool]
 
 
@@ -58,9 +57,7 @@ class _Plan:
         return len(self.asked) - 1
 
 
-def find_all(
-    design: Design, state: str, kind: str, policy: Policy, gap: float, stop: Stop
-) -> StateFindings:
+def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, stop: Stop) -> StateFindings:
     """Search, bound and judge every check of a state. `kind`: "operating", or "fault" (full ratings)."""
     full = kind == "fault"
     try:
@@ -78,8 +75,7 @@ def find_all(
     problem = Problem(network, notes, plan.asked)
     worst = worst_case(problem, gap, np.array(plan.limits), stop)
     findings = tuple(
-        _finding(design, network, check, state, kind, plan, worst, index, gap)
-        for index, check in enumerate(checks)
+        _finding(design, network, check, state, kind, plan, worst, index, gap) for index, check in enumerate(checks)
     )
     seen = {
         (ask.part, ask.quantity): (float(worst.peaks.value[n]), worst.peaks.point[n])
@@ -111,9 +107,7 @@ def _upper_temperatures(network: Network, notes: Mapping[str, object], gap: floa
     none = np.full(len(asked), np.nan)
     worst = worst_case(Problem(network, notes, asked), gap, none, stop)  # type: ignore[arg-type]
     return {
-        ask.part: float(bound)
-        for ask, bound in zip(asked, worst.bounds.bound, strict=True)
-        if math.isfinite(bound)
+        ask.part: float(bound) for ask, bound in zip(asked, worst.bounds.bound, strict=True) if math.isfinite(bound)
     }
 
 
@@ -184,7 +178,9 @@ def _finding(
     use = plan.use[index]
     point = worst.peaks.point[use if use >= 0 else column]
     if not np.isfinite(worst.peaks.value[column]):
-        return _lost(check, state, kind, "the voltage or current isn't set by the circuit, or no solution is vouched for")
+        return _lost(
+            check, state, kind, "the voltage or current isn't set by the circuit, or no solution is vouched for"
+        )
     problem = Problem(network, part_notes(design), [Asked(check.part, check.quantity)])
     stress = float(worst.peaks.value[column]) if use < 0 else float(problem.values(point[None])[0, 0])
     hertz = float(point[network.lines[0].frequency_axis])

@@ -64,9 +64,7 @@ def _note(kind: str, part: Any, ambient: float | None) -> PartNotes:
     return PartNotes(kind, share, thermal_resistance=thermal, ambient=ambient)
 
 
-def checks_of(
-    design: Design, policy: Policy, kelvin: Mapping[str, float], *, full: bool
-) -> list[Check]:
+def checks_of(design: Design, policy: Policy, kelvin: Mapping[str, float], *, full: bool) -> list[Check]:
     """Every check of a state, parts in file order, quantities in registry order.
 
     kelvin: upper temperature of the parts for which it is known; full: compare with full ratings (fault states).
@@ -76,9 +74,7 @@ def checks_of(
     for kind in KINDS:
         for name, part in present(design, kind):
             for quantity in quantities_of(kind):
-                limits = limits_for(
-                    policy, kind, name, part, quantity.name, kelvin=kelvin.get(name), full=full
-                )
+                limits = limits_for(policy, kind, name, part, quantity.name, kelvin=kelvin.get(name), full=full)
                 if limits.outcome == "not-asked":
                     continue
                 obstacle = everything or _obstacle(design, kind, name, part, quantity.name)

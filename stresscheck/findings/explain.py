@@ -4,9 +4,7 @@ from __future__ import annotations
 
 import math
 
-import numpy as np
-from numpy.typing import NDArray
-
+from stresscheck.arrays import Floats
 from stresscheck.circuit.laws import TAU
 from stresscheck.circuit.modes import Mode, natural_modes
 from stresscheck.circuit.network import Network
@@ -14,7 +12,6 @@ from stresscheck.circuit.phasors import Phasors, phasors
 from stresscheck.findings.checks import Check
 from stresscheck.working import Step
 
-Floats = NDArray[np.float64]
 THEORY = "circuit theory"
 NEAR = 3.0
 """A drive within this many bandwidths of a resonance is driven by it: own decision, for wording only."""
@@ -71,14 +68,18 @@ def steps_for(network: Network, check: Check, point: Floats, stress: float) -> t
         hertz = float(seen.omega[0] / TAU)
         z, volt, ampere = (complex(v[0, place]) for v in (seen.ohm, seen.volt, seen.ampere))
         at = f"f = {_text(hertz, 'Hz')}"
-        steps.append(Step(f"Z{tag}", "R + jX of the part", f"{at}: {z.real:.6g} {z.imag:+.6g}j ohm", abs(z), "ohm", THEORY))
+        steps.append(
+            Step(f"Z{tag}", "R + jX of the part", f"{at}: {z.real:.6g} {z.imag:+.6g}j ohm", abs(z), "ohm", THEORY)
+        )
         steps.append(Step(f"I{tag}", "peak, from the nodal equations at the point", at, abs(ampere), "A", THEORY))
         if network.branch_of(check.part) is not None:
             formula, numbers = f"I{tag} |Z{tag}|", f"{abs(ampere):.6g} A x {abs(z):.6g} ohm"
             if any(place in (c.first, c.second) for c in network.couplings):
                 formula, numbers = "peak, with the voltage induced by coupled coils", at
             steps.append(Step(f"V{tag}", formula, numbers, abs(volt), "V", THEORY))
-    steps.append(Step(check.quantity, _formula(check, len(network.lines)), "from the lines above", stress, check.unit, THEORY))
+    steps.append(
+        Step(check.quantity, _formula(check, len(network.lines)), "from the lines above", stress, check.unit, THEORY)
+    )
     return tuple(steps)
 
 

@@ -79,8 +79,16 @@ def drive_reports(network: Network, state: str) -> tuple[DriveReport, ...]:
         side = "in phase" if abs(angle) < IN_PHASE else "inductive" if angle > 0.0 else "capacitive"
         found.append(
             DriveReport(
-                state, source.name, float(at.omega[0] / TAU), abs(volt), abs(ampere), power.real, power.imag,
-                abs(power), math.degrees(angle), side,
-            )  # fmt: skip
+                state,
+                source.name,
+                float(at.omega[0] / TAU),
+                abs(volt),
+                abs(ampere),
+                power.real,
+                power.imag,
+                abs(power),
+                math.degrees(angle),
+                side,
+            )
         )
     return tuple(found)

@@ -6,23 +6,20 @@ from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Flags, Floats, Indices
+from stresscheck.circuit.enclosure import LineBounds
 from stresscheck.circuit.modes import mode_hertz
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.splitting import best_split
 from stresscheck.circuit.tuning import branch_on_axis, reactive_axes, stationary_values, tuned_values
 from stresscheck.search.box import Box, corner_points
 from stresscheck.search.climb import Peaks, climb, merge
-from stresscheck.search.ridge import along_ridges, gained
 from stresscheck.search.prove import Bounds, Goal, prove
-from stresscheck.stress.sizes import sizes_at, sizes_over
+from stresscheck.search.ridge import along_ridges, gained
 from stresscheck.stress.needs import needs_of
+from stresscheck.stress.sizes import sizes_at, sizes_over
 from stresscheck.stress.stresses import PartNotes, stresses
-
-Floats = NDArray[np.float64]
-Indices = NDArray[np.intp]
-Flags = NDArray[np.bool_]
 
 ZERO = 1e-9
 """What counts as zero beside the largest stress of the same quantity: rounding leaves such noise in dead parts."""
@@ -90,9 +87,7 @@ class Problem:
             columns.append(value)
         return np.stack(columns, axis=1)
 
-    def bounds(
-        self, lows: Floats, highs: Floats, focus: Indices, still: Flags
-    ) -> tuple[Floats, Indices]:
+    def bounds(self, lows: Floats, highs: Floats, focus: Indices, still: Flags) -> tuple[Floats, Indices]:
         """Bound of the functions still asked for over boxes, and the axis to split each box on."""
         need = needs_of(self.network, [a for a, s in zip(self.asked, still, strict=True) if s])
         sizes, lines = sizes_over(self.network, lows, highs, need)
@@ -109,7 +104,7 @@ class Problem:
         return bound, self._split(sizes.ampere, sizes.volt, lines, lows, highs, focus)
 
     def _split(
-        self, ampere: Floats, volt: Floats, lines: list, lows: Floats, highs: Floats, focus: Indices
+        self, ampere: Floats, volt: Floats, lines: list[LineBounds], lows: Floats, highs: Floats, focus: Indices
     ) -> Indices:
         """Split on behalf of the line that contributes most to the function in focus."""
         outputs = self.outputs()[focus]
@@ -124,9 +119,7 @@ class Problem:
         for number, line in enumerate(self.network.lines):
             mine = leading == number
             if mine.any():
-                axis[mine] = best_split(
-                    self.network, line, lines[number], outputs, lows, highs
-                )[mine]
+                axis[mine] = best_split(self.network, line, lines[number], outputs, lows, highs)[mine]
         return axis
 
     def outputs(self) -> Indices:
@@ -195,11 +188,9 @@ class Problem:
             for column in range(modes.shape[1]):
                 at_mode = corners.copy()
                 for axis in bands:
-                    at_mode[:, axis] = np.where(
-                        np.isfinite(modes[:, column]), modes[:, column], corners[:, axis]
-                    )
+                    at_mode[:, axis] = np.where(np.isfinite(modes[:, column]), modes[:, column], corners[:, axis])
                 out.append(at_mode)
-        return np.clip(np.concatenate(out), self.box.low, self.box.high)
+        return np.asarray(np.clip(np.concatenate(out), self.box.low, self.box.high))
 
 
 def _find(problem: Problem) -> Peaks:
@@ -215,9 +206,7 @@ def _find(problem: Problem) -> Peaks:
     return peaks
 
 
-def worst_case(
-    problem: Problem, gap: float, limit: Floats, stop: Callable[[bool], bool]
-) -> Worst:
+def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool], bool]) -> Worst:
     """Find and bound every asked function of a problem.
 
     gap: how far a bound may stay above the found value, relative; limit: what each function is compared with, NaN

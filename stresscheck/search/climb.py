@@ -6,12 +6,10 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Floats, Indices
 from stresscheck.search.box import Box
 
-Floats = NDArray[np.float64]
-Indices = NDArray[np.intp]
 Evaluate = Callable[[Floats], Floats]
 """points [points, axes] → values [points, functions]; NaN where there is none."""
 Candidates = Callable[[Floats, Indices, int], Floats]

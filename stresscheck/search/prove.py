@@ -6,13 +6,10 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Flags, Floats, Indices
 from stresscheck.search.box import Box
 
-Floats = NDArray[np.float64]
-Indices = NDArray[np.intp]
-Flags = NDArray[np.bool_]
 Enclose = Callable[[Floats, Floats, Indices, Flags], tuple[Floats, Indices]]
 """(lows, highs [boxes, axes], function that matters most in each box, functions still asked for) → (upper bounds
 [boxes, functions], infinite where none is known or asked for; axis on which each box is best split)."""
@@ -89,14 +86,12 @@ class _Pool:
 
     def retire(self, goal: Floats) -> None:
         """Close the boxes whose bounds all meet the goal."""
-        open_ = (self.bound > goal).any(axis=1)
+        open_: Flags = np.asarray((self.bound > goal).any(axis=1))
         if not open_.all():
             self.closed = np.maximum(self.closed, self.bound[~open_].max(axis=0))
             self._keep(open_)
 
-    def take(
-        self, function: int, goal: Floats, batch: int
-    ) -> tuple[Floats, Floats, Floats, Indices]:
+    def take(self, function: int, goal: Floats, batch: int) -> tuple[Floats, Floats, Floats, Indices]:
         """Remove and return the boxes with the largest bounds of one function, those over its goal only."""
         column = self.bound[:, function]
         count = min(batch, int((column > goal[function]).sum()))
@@ -115,12 +110,10 @@ class _Pool:
         """Largest bound of any box, done or open, [functions]."""
         if not len(self.bound):
             return self.closed
-        return np.maximum(self.closed, self.bound.max(axis=0))
+        return np.asarray(np.maximum(self.closed, self.bound.max(axis=0)))
 
 
-def prove(
-    box: Box, enclose: Enclose, improve: Improve, found: Floats, goal: Goal, batch: int, stop: Stop
-) -> Bounds:
+def prove(box: Box, enclose: Enclose, improve: Improve, found: Floats, goal: Goal, batch: int, stop: Stop) -> Bounds:
     """Best-first branch and bound until every function has closed its gap, or `stop` says so.
 
     found: largest values known [functions]; NaN functions get an infinite bound. A child's bound is never above its
@@ -171,9 +164,7 @@ class _Turns:
         return self.current
 
 
-def _halves(
-    low: Floats, high: Floats, bound: Floats, axis: Indices
-) -> tuple[Floats, Floats, Floats]:
+def _halves(low: Floats, high: Floats, bound: Floats, axis: Indices) -> tuple[Floats, Floats, Floats]:
     """Both halves of every box along its axis, and the bounds of their parents: lower halves first."""
     rows = np.arange(len(low))
     middle = 0.5 * (low[rows, axis] + high[rows, axis])

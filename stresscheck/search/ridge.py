@@ -9,13 +9,11 @@ from __future__ import annotations
 from collections.abc import Callable
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Floats, Indices
 from stresscheck.search.box import Box
 from stresscheck.search.climb import Evaluate, Peaks, merge
 
-Floats = NDArray[np.float64]
-Indices = NDArray[np.intp]
 Retune = Callable[[Floats, Indices, int], Floats]
 """(points [points, axes], function of each, axis) → values of that axis at which the function may be back on its
 ridge, [points, tries], NaN where there is none."""
@@ -29,11 +27,12 @@ def along_ridges(box: Box, evaluate: Evaluate, retune: Retune, tunable: tuple[in
     """Better peaks by moving one axis and retuning another; the same peaks where nothing is gained."""
     target = np.flatnonzero(np.isfinite(peaks.value))
     starts = peaks.point[target]
-    trials = []
-    for moved in box.varying:
-        for tuned in tunable:
-            if tuned != moved:
-                trials.append(_steps(box, retune, starts, target, moved, tuned))
+    trials = [
+        _steps(box, retune, starts, target, moved, tuned)
+        for moved in box.varying
+        for tuned in tunable
+        if tuned != moved
+    ]
     if not trials:
         return peaks
     points = np.concatenate(trials)
@@ -55,9 +54,7 @@ def _steps(box: Box, retune: Retune, starts: Floats, target: Indices, moved: int
     steps = np.concatenate([width, -width])
     points = np.repeat(starts, len(steps), axis=0)
     functions = np.repeat(target, len(steps))
-    points[:, moved] = np.clip(
-        points[:, moved] + np.tile(steps, len(starts)), box.low[moved], box.high[moved]
-    )
+    points[:, moved] = np.clip(points[:, moved] + np.tile(steps, len(starts)), box.low[moved], box.high[moved])
     values = retune(points, functions, tuned)
     out = np.repeat(points, values.shape[1], axis=0)
     value = values.reshape(-1)

@@ -3,12 +3,10 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Floats
 from stresscheck.stress.seen import PartSeen, heat, peak, rms, square_mean
 from stresscheck.stress.sharing import Share
-
-Floats = NDArray[np.float64]
 
 
 def capacitor_stress(seen: PartSeen, share: Share) -> dict[str, Floats]:

@@ -2,17 +2,11 @@
 
 from __future__ import annotations
 
-import numpy as np
-from numpy.typing import NDArray
-
+from stresscheck.arrays import Floats
 from stresscheck.stress.seen import peak, rms
 
-Floats = NDArray[np.float64]
 
-
-def drive_stress(
-    ampere: Floats, dc_ampere: Floats, groups: tuple[int, ...], watt: Floats
-) -> dict[str, Floats]:
+def drive_stress(ampere: Floats, dc_ampere: Floats, groups: tuple[int, ...], watt: Floats) -> dict[str, Floats]:
     """current_peak and current_rms [A] of the terminals, real power [W] delivered behind its own resistance.
 
     ampere: peak at each line, [lines, points]; dc_ampere, watt: [points]. Source: circuit theory.

@@ -2,12 +2,8 @@
 
 from __future__ import annotations
 
-import numpy as np
-from numpy.typing import NDArray
-
+from stresscheck.arrays import Floats
 from stresscheck.stress.seen import PartSeen, heat, peak, rms
-
-Floats = NDArray[np.float64]
 
 
 def inductor_stress(seen: PartSeen, turns: float | None, core_area: float | None) -> dict[str, Floats]:

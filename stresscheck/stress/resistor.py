@@ -2,13 +2,9 @@
 
 from __future__ import annotations
 
-import numpy as np
-from numpy.typing import NDArray
-
+from stresscheck.arrays import Floats
 from stresscheck.stress.seen import PartSeen, heat, peak, rms
 from stresscheck.stress.sharing import Share
-
-Floats = NDArray[np.float64]
 
 
 def resistor_stress(seen: PartSeen, share: Share) -> dict[str, Floats]:

@@ -18,6 +18,10 @@ class Share:
     ampere: float = 1.0
 
 
+SINGLE = Share()
+"""The share of a part that is no bank."""
+
+
 def bank_share(in_series: int, in_parallel: int, tolerance: float, *, dc_divides: bool) -> Share:
     """Share of the unit that deviates by +t among others that deviate by -t.
 

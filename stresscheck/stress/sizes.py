@@ -5,16 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.direct import Direct, direct, direct_bounds
 from stresscheck.circuit.enclosure import LineBounds, Need, line_bounds
 from stresscheck.circuit.laws import TAU
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import Phasors, phasors
 from stresscheck.stress.seen import BranchSeen
-
-Floats = NDArray[np.float64]
 
 
 @dataclass(frozen=True, slots=True)
@@ -68,9 +66,7 @@ def sizes_at(network: Network, points: Floats) -> Sizes:
     )
 
 
-def _drives_at(
-    network: Network, lines: list[Phasors], still: Direct
-) -> tuple[tuple[Floats, ...], tuple[Floats, ...]]:
+def _drives_at(network: Network, lines: list[Phasors], still: Direct) -> tuple[tuple[Floats, ...], tuple[Floats, ...]]:
     terminal, watt = [], []
     for index, source in enumerate(network.sources):
         seen = lines[source.line]
@@ -83,7 +79,7 @@ def _drives_at(
     return tuple(terminal), tuple(watt)
 
 
-def terminal_phasors(network: Network, index: int, seen: Phasors) -> tuple[Floats, Floats]:
+def terminal_phasors(network: Network, index: int, seen: Phasors) -> tuple[Complexes, Complexes]:
     """Voltage across a drive's terminals and the current it sends into the circuit, complex [points]."""
     source = network.sources[index]
     column = network.lines[source.line].sources.index(index)
@@ -109,8 +105,7 @@ def sizes_over(
     ampere = np.stack([bound.ampere for bound in lines])
     watt = np.stack([bound.root_watt for bound in lines])
     terminal = tuple(
-        lines[s.line].terminal[:, network.lines[s.line].sources.index(i)]
-        for i, s in enumerate(network.sources)
+        lines[s.line].terminal[:, network.lines[s.line].sources.index(i)] for i, s in enumerate(network.sources)
     )
     sizes = Sizes(
         volt,
@@ -119,10 +114,7 @@ def sizes_over(
         np.stack([bound.root_var for bound in lines]),
         np.stack([bound.node for bound in lines]),
         terminal,
-        tuple(
-            _watt_bound(network, index, volt, watt, terminal[index], still)
-            for index in range(len(network.sources))
-        ),
+        tuple(_watt_bound(network, index, volt, watt, terminal[index], still) for index in range(len(network.sources))),
         (TAU * lows[:, columns].T, TAU * highs[:, columns].T),
         (lows, highs),
         still,

@@ -6,18 +6,17 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from stresscheck.arrays import Floats
 from stresscheck.circuit.network import Network
 from stresscheck.stress.capacitor import capacitor_stress
 from stresscheck.stress.drive import drive_stress
 from stresscheck.stress.inductor import inductor_stress
 from stresscheck.stress.resistor import resistor_stress
 from stresscheck.stress.seen import PartSeen, peak, rms
-from stresscheck.stress.sharing import Share
+from stresscheck.stress.sharing import SINGLE, Share
 from stresscheck.stress.sizes import Sizes
 
-Floats = NDArray[np.float64]
 Key = tuple[str, str]
 """(part, quantity); nodes as parts named "node:NAME" with voltage_peak, voltage_rms, voltage_dc."""
 
@@ -30,7 +29,7 @@ class PartNotes:
     """
 
     kind: str
-    share: Share = Share()
+    share: Share = SINGLE
     turns: float | None = None
     core_area: float | None = None
     thermal_resistance: float | None = None

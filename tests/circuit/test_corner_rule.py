@@ -36,7 +36,7 @@ def test_corner_rule_random_multiaffine_functions_never_below_a_point() -> None:
 
 
 def test_corner_rule_series_tank_is_exact_whatever_the_detuning() -> None:
-    """V_C = X_C E / (r + j(X_L - X_C)): at angle 0 the denominator is r, so the bound is the largest X_C / smallest r."""
+    """V_C = X_C E / (r + j(X_L - X_C)): at angle 0 the denominator is r: the bound is largest X_C / smallest r."""
     r, xl, xc = (1e-4, 2e-4), (0.9, 1.1), (0.95, 1.05)
     below, above = [], []
     for a, b, c in itertools.product(r, xl, xc):

@@ -22,7 +22,9 @@ FIGURE = re.compile(r"^[+-]?[0-9.]+([eE][+-]?[0-9]+)? ?([A-Za-z%/^0-9]+)?$|^[0-9
 NOT_FIGURES = {*SOURCE, "source", "title", "name", "notes", "says", "basis"}
 
 
-def figures_without_source(data: dict[str, Any], path: str = "", above: frozenset[str] = frozenset()) -> list[str]:
+def figures_without_source(
+    data: dict[str, Any], path: str = "", above: frozenset[str] = frozenset()
+) -> list[str]:
     """Paths of figures whose table, with the tables above it, lacks a part of the source."""
     has = above | {key for key in SOURCE if isinstance(data.get(key), str) and data[key].strip()}
     found = []
@@ -32,7 +34,7 @@ def figures_without_source(data: dict[str, Any], path: str = "", above: frozense
             found += figures_without_source(value, here, has)
         elif isinstance(value, list) and value and all(isinstance(item, dict) for item in value):
             for item in value:
-                found += figures_without_source({"says": "0 V", **item, "figure": 0}, here)
+                found += figures_without_source({**item, "figure": 0}, here)
         elif key not in NOT_FIGURES and holds_figure(value) and len(has) < len(SOURCE):
             found.append(f"{here} lacks {', '.join(sorted(set(SOURCE) - has))}")
     return found
@@ -88,7 +90,9 @@ def test_walker_source_taken_out_of_a_row_is_noticed(lost: str) -> None:
 
 
 def rows_of(path: Path) -> list[tuple[str, str]]:
-    return [(table, name) for table in ("row", "reference", "threshold") for name in parsed(path).get(table, {})]
+    return [
+        (table, name) for table in ("row", "reference", "threshold") for name in parsed(path).get(table, {})
+    ]
 
 
 def without(text: str, table: str, name: str, key: str) -> str:

@@ -84,16 +84,25 @@ def test_arrays_are_locked() -> None:
 
 
 @pytest.mark.parametrize(
-    "points", [[(1e3, 1.0)], [(1e3, 1.0), (1e3, 2.0)], [(2e3, 1.0), (1e3, 2.0)], [(1e3, 0.0), (2e3, 1.0)], [(0.0, 1.0), (1.0, 1.0)]]
+    "points",
+    [
+        [(1e3, 1.0)],
+        [(1e3, 1.0), (1e3, 2.0)],
+        [(2e3, 1.0), (1e3, 2.0)],
+        [(1e3, 0.0), (2e3, 1.0)],
+        [(0.0, 1.0), (1.0, 1.0)],
+    ],
 )
 def test_over_frequency_points_that_make_no_curve_are_refused(points: list[tuple[float, float]]) -> None:
     with pytest.raises(ValueError, match="two or more points"):
         over_frequency(points)
 
 
-curves = st.lists(
-    st.tuples(st.floats(0.05, 3.0), st.floats(-6.0, 6.0)), min_size=2, max_size=6
-).map(lambda steps: over_frequency(list(zip(np.cumsum([10.0**a for a, _ in steps]).tolist(), [10.0**b for _, b in steps], strict=True))))
+curves = st.lists(st.tuples(st.floats(0.05, 3.0), st.floats(-6.0, 6.0)), min_size=2, max_size=6).map(
+    lambda steps: over_frequency(
+        list(zip(np.cumsum([10.0**a for a, _ in steps]).tolist(), [10.0**b for _, b in steps], strict=True))
+    )
+)
 
 
 @given(curves, st.floats(0.0, 1.0), st.floats(0.0, 1.0), st.integers(2, 40))

@@ -6,9 +6,7 @@ import math
 from collections.abc import Mapping
 from typing import TYPE_CHECKING
 
-import numpy as np
-from numpy.typing import NDArray
-
+from stresscheck.arrays import Floats
 from stresscheck.cautions.facts import CapacitorFact, NodeFact
 from stresscheck.circuit.direct import groups
 from stresscheck.circuit.modes import natural_modes
@@ -22,7 +20,6 @@ from stresscheck.stress.stresses import stresses
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
 
-Floats = NDArray[np.float64]
 NEAR = 3.0
 
 
@@ -43,10 +40,18 @@ def node_facts(design: Design, found: StateFindings) -> list[NodeFact]:
         drive, volt, resonance = _reason(network, point)
         facts.append(
             NodeFact(
-                node, found.state, float(here[part, "voltage_rms"][0]), value, float(here[part, "voltage_dc"][0]),
-                _highest(network, point), drive, volt, None if not volt else value / volt, resonance,
+                node,
+                found.state,
+                float(here[part, "voltage_rms"][0]),
+                value,
+                float(here[part, "voltage_dc"][0]),
+                _highest(network, point),
+                drive,
+                volt,
+                None if not volt else value / volt,
+                resonance,
                 reachable is None or node in reachable,
-            )  # fmt: skip
+            )
         )
     return facts
 
@@ -99,10 +104,19 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
         drive, volt, resonance = _reason(network, point if point is not None else network.axes.nominal)
         facts.append(
             CapacitorFact(
-                name, found.state, float(part.span().high) * scale, value, trapped or None, tied,
-                network.branches[leak].fixed if leak is not None else None, str(part.family or ""),
-                drive, volt, value / volt if volt else None, resonance,
-            )  # fmt: skip
+                name,
+                found.state,
+                float(part.span().high) * scale,
+                value,
+                trapped or None,
+                tied,
+                network.branches[leak].fixed if leak is not None else None,
+                str(part.family or ""),
+                drive,
+                volt,
+                value / volt if volt else None,
+                resonance,
+            )
         )
     return facts
 
