@@ -6,9 +6,12 @@ import math
 from collections.abc import Mapping
 from typing import TYPE_CHECKING
 
+import numpy as np
+
 from stresscheck.arrays import Floats
 from stresscheck.cautions.facts import CapacitorFact, NodeFact
 from stresscheck.circuit.direct import groups
+from stresscheck.circuit.laws import ResistorLaw
 from stresscheck.circuit.modes import natural_modes
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import phasors
@@ -97,7 +100,6 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
         scale = (part.in_parallel or 1) / (part.in_series or 1)
         value, point = _worst_volt(network, found.worst, name, place)
         tied = group[branch.first] == group[branch.second] or network.branch_of(name, "leakage") is not None
-        leak = network.branch_of(name, "leakage")
         trapped = None
         if not tied and point is not None:
             trapped = float(sizes_at(network, point[None]).direct.volt[0, place])
@@ -110,7 +112,7 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
                 value,
                 trapped or None,
                 tied,
-                network.branches[leak].fixed if leak is not None else None,
+                _bleeding_ohm(network, branch.first, branch.second),
                 str(part.family or ""),
                 drive,
                 volt,
@@ -119,6 +121,29 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
             )
         )
     return facts
+
+
+def _bleeding_ohm(network: Network, first: int, second: int) -> float | None:
+    """Largest resistance between two nodes through resistors alone, drives open; None without such a path.
+
+    Coils are left out: what discharges through a coil rings, and takes as long as the ringing.
+    """
+    size = len(network.nodes)
+    laplace = np.zeros((size + 1, size + 1))
+    for branch in network.branches:
+        if branch.role == "source" or not isinstance(branch.law, ResistorLaw) or branch.first == branch.second:
+            continue
+        value = branch.fixed if branch.axis is None else network.axes.items[branch.axis].high
+        siemens = 1.0 / (branch.law.scale * value)
+        for one, two in ((branch.first, branch.second), (branch.second, branch.first)):
+            laplace[one, one] += siemens
+            laplace[one, two] -= siemens
+    push = np.zeros(size + 1)
+    push[first], push[second] = 1.0, -1.0
+    volt, *_ = np.linalg.lstsq(laplace, push, rcond=None)
+    if not np.allclose(laplace @ volt, push, atol=1e-6):
+        return None
+    return float(volt[first] - volt[second])
 
 
 def _worst_volt(

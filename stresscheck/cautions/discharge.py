@@ -79,14 +79,14 @@ def _stays(fact: CapacitorFact, thresholds: Thresholds, floor: float) -> Caution
     trapped, kept = abs(fact.volt_dc_trapped or 0.0), _kept(fact, floor)
     if trapped >= floor:
         hazard, cause = "trapped-dc", "no path for direct current takes it away after switch-off"
-        numbers = f"{shown(trapped, 'V')} DC trapped on {fact.part} ({shown(kept, 'V')} peak can stay)"
+        numbers = f"{shown(kept, 'V')} peak can stay on {fact.part}, {shown(trapped, 'V')} of it trapped DC,"
         fired = (trap, rule)
     else:
         hazard, cause = "no-discharge-path", "no permanent discharge path with the drives open"
         numbers = f"{shown(kept, 'V')} peak can stay on {fact.part}"
         fired = (rule, rule)
     text = (
-        f"{numbers} in state {fact.state}: {cause}.{reason(fact)} Asked from {shown(floor, 'V')} up. "
+        f"{numbers} in state {fact.state}: {cause}.{reason(fact)} Fires from {shown(floor, 'V')} up. "
         f"{_rest(fired[0], thresholds)}"
     )
     source = "; ".join(dict.fromkeys(threshold.sources() for threshold in fired))
@@ -113,9 +113,8 @@ def _slow(fact: CapacitorFact, seconds: float, thresholds: Thresholds) -> Cautio
 def _unknown_time(fact: CapacitorFact, rule: Threshold, thresholds: Thresholds) -> Caution:
     text = (
         f"{shown(fact.volt, 'V')} peak on {fact.part} in state {fact.state}: a discharge path is there, "
-        "but its "
-        f"resistance isn't known, so the time to {rule.shown('voltage')} couldn't be computed.{reason(fact)} "
-        f"{_rest(rule, thresholds)}"
+        f"but its resistance isn't known, so the time to {rule.shown('voltage')} couldn't be computed."
+        f"{reason(fact)} {_rest(rule, thresholds)}"
     )
     threshold, evidence = rule.figure("voltage"), rule.source.evidence
     name = f"discharge-time-unknown.{fact.part}"
@@ -131,11 +130,10 @@ def _wanted(thresholds: Thresholds) -> str:
     """What documents ask of a discharge path, each named."""
     rule, nec = thresholds["discharge"], thresholds["discharge-nec"]
     shunt, state = thresholds["discharge-shunt-capacitors"], thresholds["discharge-california"]
+    power = f"{nec.source.document} {nec.source.clause}, {state.source.document} {state.source.clause}"
     return (
-        f"Documents ask for {rule.shown('voltage')} within {rule.shown('time')} ({rule.source.document}), "
-        f"{nec.shown('voltage')} within {nec.shown('time_low_voltage')} at low voltage and "
-        f"{nec.shown('time_higher_voltage')} above ({nec.source.clause} of {nec.source.document}, "
-        f"{state.source.clause} of {state.source.document}), {shunt.shown('voltage')} within "
-        f"{shunt.shown('time')} "
+        f"Asked for: {rule.shown('voltage')} in {rule.shown('time')} ({rule.source.document}); "
+        f"{nec.shown('voltage')} in {nec.shown('time_low_voltage')}, at higher voltage in "
+        f"{nec.shown('time_higher_voltage')} ({power}); {shunt.shown('voltage')} in {shunt.shown('time')} "
         f"({shunt.source.document})."
     )

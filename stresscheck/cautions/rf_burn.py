@@ -28,20 +28,16 @@ def _caution(fact: NodeFact, hertz: float, thresholds: Thresholds) -> Caution:
     low, high = (thresholds[name] for name in IDS)
     silent = hertz >= high.figure("frequency")
     feel = (
-        f" From {high.shown('frequency')} burns come without prior tingling, and a brushing contact is "
-        "worse than a "
-        f"firm one; the touch current reported for the public is {high.shown('touch_current')} RMS, and it "
-        "isn't "
-        "computed here."
+        f" From {high.shown('frequency')} burns come without prior tingling; "
+        "a brushing contact is worse than a firm one."
         if silent
         else ""
     )
     text = (
-        f"{levels(fact)} at up to {shown(hertz, 'Hz', 4)} on node {fact.node}, which can be reached, in "
-        "state "
-        f"{fact.state}: burn by radio frequency.{feel}{reason(fact)} Fires from {low.shown('frequency')} "
-        "where the "
-        f"touch caution fired.{not_covered(low.not_covered)} {DEFER}"
+        f"{levels(fact)} at up to {shown(hertz, 'Hz', 4)} on node {fact.node}, which can be reached, "
+        f"in state {fact.state}: burn by radio frequency.{feel}{reason(fact)} "
+        f"Fires from {low.shown('frequency')} where the touch caution fired."
+        f"{not_covered(low.not_covered)} {DEFER}"
     )
     source = f"{low.sources()}; {high.sources()}" if silent else low.sources()
     threshold = low.figure("frequency")

@@ -61,9 +61,8 @@ def _caution(fact: CapacitorFact, fired: _Fired, thresholds: Thresholds) -> Caut
     tier = fired.tier
     text = (
         f"{shown(fact.farad * fact.volt, 'C')} on {fact.part} ({shown(fact.farad, 'F')} at "
-        f"{shown(fact.volt, 'V')} "
-        f"peak, DC included) in state {fact.state}: stored charge.{reason(fact)} Fires above "
-        f"{tier.shown(fired.figure)} {fired.where}. "
+        f"{shown(fact.volt, 'V')} peak, DC included) in state {fact.state}: stored charge.{reason(fact)} "
+        f"Fires above {tier.shown(fired.figure)}, {fired.where}. "
         f"{before_work(thresholds)}{not_covered(tier.not_covered)} {DEFER}"
     )
     return Caution(

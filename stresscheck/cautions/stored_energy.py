@@ -45,9 +45,8 @@ def _caution(fact: CapacitorFact, tier: Threshold, thresholds: Thresholds) -> Ca
     )
     text = (
         f"{shown(fact.joule, 'J')} in {fact.part} ({shown(fact.farad, 'F')} at {shown(fact.volt, 'V')} "
-        "peak, DC "
-        f"included) in state {fact.state}: stored energy.{reason(fact)} Fires above {tier.shown('energy')} "
-        f"{_range(tier)}.{also} "
+        f"peak, DC included) in state {fact.state}: stored energy.{reason(fact)} "
+        f"Fires above {tier.shown('energy')} {_range(tier)}.{also} "
         f"{before_work(thresholds)}{_recovery(fact, thresholds)}{not_covered(tier.not_covered)} {DEFER}"
     )
     source = f"{tier.sources()}; {older.sources()}" if shock else tier.sources()
@@ -80,6 +79,5 @@ def _recovery(fact: CapacitorFact, thresholds: Thresholds) -> str:
     low, high = (100.0 * recharge.figure(name) for name in ("fraction_low", "fraction_high"))
     return (
         f" After a short, an electrolytic recovers {shown_number(low)} to {shown_number(high)} % of its "
-        "former "
-        f"voltage ({recharge.source.document}, evidence: {recharge.source.evidence})."
+        f"former voltage ({recharge.source.document}, evidence: {recharge.source.evidence})."
     )

@@ -24,10 +24,12 @@ def unknown_voltage(facts: Facts, thresholds: Thresholds) -> list[Caution]:
     found = []
     for (kind, name), state in sorted(subjects.items()):
         text = (
-            f"No figure for the voltage of {kind} {name} in state {state}: it couldn't be computed. Treat "
-            "it as at "
-            f"least {notice.shown('voltage')} peak, and as live.{not_covered(notice.not_covered)} {DEFER}"
+            f"No figure for the voltage of {kind} {name} in state {state}: it couldn't be computed. "
+            f"Treat it as at least {notice.shown('voltage')} peak, and as live."
+            f"{not_covered(notice.not_covered)} {DEFER}"
         )
+        # a node and a part may bear the same name: their ids must differ
+        hazard = "unknown-voltage" if kind == "node" else "unknown-charge"
         source = notice.sources()
-        found.append(Caution(f"unknown-voltage.{name}", name, text, volt, "V", volt, source, "own decision"))
-    return found
+        found.append(Caution(f"{hazard}.{name}", name, text, volt, "V", volt, source, "own decision"))
+    return sorted(found, key=lambda caution: (caution.subject, caution.id))

@@ -7,9 +7,7 @@ from decimal import ROUND_CEILING, Context, Decimal
 from stresscheck.cautions.facts import CapacitorFact, NodeFact
 from stresscheck.cautions.thresholds import Thresholds
 
-DEFER = (
-    "Guards, interlocks, wait times and labels follow local codes; a licensed or qualified person decides."
-)
+DEFER = "Guards, interlocks, wait times and labels: local codes and a licensed or qualified person decide."
 _PREFIXES = (
     (1e9, "G"),
     (1e6, "M"),

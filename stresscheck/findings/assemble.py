@@ -21,11 +21,14 @@ from stresscheck.findings.judge import judge
 from stresscheck.findings.worst import Asked, Limiting, Problem, Worst, worst_case
 from stresscheck.limits.limit import Limit
 from stresscheck.limits.policy import Policy
+from stresscheck.stress.stresses import PartNotes
 
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
 
 Stop = Callable[[bool], bool]
+WARM = 300.0
+"""Any temperature [K]: only asked whether knowing one makes a difference."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,8 +72,11 @@ def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, 
         lost = tuple(_lost(check, state, kind, str(error)) for check in checks)
         return StateFindings(state, lost, None, {}, str(error))
     notes = part_notes(design)
-    kelvin = _upper_temperatures(network, notes, gap, stop)
-    checks = checks_of(design, policy, kelvin, full=full)
+    checks = checks_of(design, policy, {}, full=full)
+    warm = _need_temperature(design, policy, checks, notes, full=full)
+    if warm:
+        kelvin = _upper_temperatures(network, notes, warm, gap, stop)
+        checks = checks_of(design, policy, kelvin, full=full)
     plan = _plan(network, checks)
     problem = Problem(network, notes, plan.asked)
     worst = worst_case(problem, gap, np.array(plan.limits), stop)
@@ -95,17 +101,30 @@ def _check_solvable(network: Network) -> None:
         raise CheckError("the nominal circuit has no unique solution at the drive frequency or at DC")
 
 
-def _upper_temperatures(network: Network, notes: Mapping[str, object], gap: float, stop: Stop) -> dict[str, float]:
-    """Proved upper temperature [K] of every part that declares what it takes to compute one."""
-    asked = [
-        Asked(name, "temperature")
-        for name, note in notes.items()
-        if getattr(note, "thermal_resistance", None) is not None and getattr(note, "ambient", None) is not None
-    ]
-    if not asked:
-        return {}
+def _need_temperature(
+    design: Design, policy: Policy, checks: list[Check], notes: Mapping[str, PartNotes], *, full: bool
+) -> list[str]:
+    """Parts whose limits can't be formed without their own temperature, and that declare what it takes."""
+    known = {
+        name: WARM for name, note in notes.items() if note.thermal_resistance is not None and note.ambient is not None
+    }
+    given = checks_of(design, policy, known, full=full)
+    return list(
+        dict.fromkeys(
+            check.part
+            for check, other in zip(checks, given, strict=True)
+            if check.limits.outcome != other.limits.outcome and check.part in known
+        )
+    )
+
+
+def _upper_temperatures(
+    network: Network, notes: Mapping[str, PartNotes], parts: list[str], gap: float, stop: Stop
+) -> dict[str, float]:
+    """Proved upper temperature [K] of these parts, where one can be proved."""
+    asked = [Asked(name, "temperature") for name in parts]
     none = np.full(len(asked), np.nan)
-    worst = worst_case(Problem(network, notes, asked), gap, none, stop)  # type: ignore[arg-type]
+    worst = worst_case(Problem(network, notes, asked), gap, none, stop)
     return {
         ask.part: float(bound) for ask, bound in zip(asked, worst.bounds.bound, strict=True) if math.isfinite(bound)
     }
@@ -190,9 +209,10 @@ def _finding(
     result = judge(check.limits, silent, stress, bound_use, hertz, "")
     limit = result.limit
     place = Place(hertz, tuple((a.path, float(v)) for a, v in zip(network.axes.items, point, strict=True)))
+    dead = stress <= float(worst.noise[column])
     proof = Proof(
         worst.bounds.boxes,
-        None if bound is None or stress <= 0.0 else max(0.0, float(bound) / stress - 1.0),
+        None if bound is None or dead else max(0.0, float(bound) / stress - 1.0),
         _method(network, worst),
         float(worst.corners[column]) if math.isfinite(worst.corners[column]) else None,
     )
@@ -206,7 +226,7 @@ def _finding(
         working=steps_for(network, check, point, stress) + (() if limit is None else limit.steps(hertz)),
         rating_source="" if limit is None else limit.rating_source,
         derating_source="" if limit is None else limit.derating_source,
-        why=result.why, proof=proof, reason=reason_for(network, check, point, stress),
+        why=result.why, proof=proof, reason="" if dead else reason_for(network, check, point),
     )  # fmt: skip
 
 

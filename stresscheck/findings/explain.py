@@ -19,7 +19,7 @@ WORTH = 2.0
 """A gain below this isn't named as a reason: own decision, for wording only."""
 
 
-def reason_for(network: Network, check: Check, point: Floats, stress: float) -> str:
+def reason_for(network: Network, check: Check, point: Floats) -> str:
     """Gain times drive where a resonance carries the stress; empty where it is plain."""
     seen, drive = _single_drive(network, point)
     place = network.branch_of(check.part)

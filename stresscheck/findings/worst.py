@@ -53,12 +53,16 @@ class Asked:
 
 @dataclass(frozen=True, slots=True)
 class Worst:
-    """Per asked function: nominal value, largest found and where, largest at corners alone, and the bound."""
+    """Per asked function: nominal value, largest found and where, largest at corners alone, and the bound.
+
+    `noise`: values up to this are rounding of a stress that is zero.
+    """
 
     nominal: Floats
     peaks: Peaks
     corners: Floats
     bounds: Bounds
+    noise: Floats
 
 
 @dataclass(slots=True)
@@ -217,7 +221,7 @@ def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool
     peaks = _find(problem)
     if not problem.box.varying:
         peaks = Peaks(nominal, np.repeat(problem.box.nominal[None], len(nominal), axis=0))
-        return Worst(nominal, peaks, corners, Bounds(nominal.copy(), 1, False))
+        return Worst(nominal, peaks, corners, Bounds(nominal.copy(), 1, False), _floor(problem, nominal))
     state = {"peaks": peaks}
 
     def improve(points: Floats) -> Floats:
@@ -241,7 +245,7 @@ def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool
     found = np.where(wanted, peaks.value, np.nan)
     bounds = prove(problem.box, problem.bounds, known, found, goal, _batch(problem), stop)
     bounds = Bounds(bounds.bound + floor, bounds.boxes, bounds.spent)
-    return Worst(nominal, state["peaks"], corners, bounds)
+    return Worst(nominal, state["peaks"], corners, bounds, floor)
 
 
 def _largest(values: Floats) -> Floats:

@@ -10,9 +10,8 @@ from stresscheck.limits.rated import Rated, at_temperature, number, over_frequen
 from stresscheck.limits.rules import celsius
 
 UNKNOWN_TEMPERATURE = (
-    "the part's own temperature isn't known: give its thermal_resistance and a dissipation that can be "
-    "computed, "
-    "and site.ambient"
+    "the part's own temperature isn't known: give its thermal_resistance and a dissipation that can "
+    "be computed, and site.ambient"
 )
 
 

@@ -18,9 +18,11 @@ What is offered decides how exactly a peak is met: stationary values of the func
 
 KEPT = 4
 """Starts kept per function."""
-SWEEPS = 40
-SETTLED = 1e-13
+SWEEPS = 6
+SETTLED = 1e-11
 """A sweep that gains less than this, relative, ends a climb."""
+FEW = 8
+"""With more tries than this on an axis the peak is sought between them too; fewer are stationary values already."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -87,16 +89,38 @@ def _move(
     ends = np.broadcast_to([box.low[axis], box.high[axis]], (len(points), 2))
     tries = np.clip(np.concatenate([offered, ends], axis=1), box.low[axis], box.high[axis])
     count = tries.shape[1]
-    trial = np.repeat(points, count, axis=0)
-    trial[:, axis] = tries.reshape(-1)
-    values = _clean(evaluate(trial)).reshape(len(points), count, -1)
-    mine = np.take_along_axis(values, target[:, None, None], axis=2)[:, :, 0]
+    mine = _heights(evaluate, points, target, axis, tries)
+    if count > FEW:
+        between = np.clip(_vertex(tries, mine), box.low[axis], box.high[axis])[:, None]
+        tries = np.concatenate([tries, between], axis=1)
+        mine = np.concatenate([mine, _heights(evaluate, points, target, axis, between)], axis=1)
     pick = mine.argmax(axis=1)
     top = mine[np.arange(len(points)), pick]
     better = top > height
     moved = points.copy()
     moved[better, axis] = tries[np.arange(len(points)), pick][better]
     return moved, np.where(better, top, height)
+
+
+def _heights(evaluate: Evaluate, points: Floats, target: Indices, axis: int, tries: Floats) -> Floats:
+    """Value of each climber's own function at each try on one axis, [climbers, tries]."""
+    trial = np.repeat(points, tries.shape[1], axis=0)
+    trial[:, axis] = tries.reshape(-1)
+    values = _clean(evaluate(trial)).reshape(len(points), tries.shape[1], -1)
+    return np.asarray(np.take_along_axis(values, target[:, None, None], axis=2)[:, :, 0])
+
+
+def _vertex(tries: Floats, heights: Floats) -> Floats:
+    """Top of the parabola through the best try and its neighbours on either side, [climbers]."""
+    order = np.argsort(tries, axis=1, kind="stable")
+    x, y = np.take_along_axis(tries, order, axis=1), np.take_along_axis(heights, order, axis=1)
+    middle = np.clip(y.argmax(axis=1), 1, x.shape[1] - 2)[:, None]
+    x0, x1, x2 = (np.take_along_axis(x, middle + i, axis=1)[:, 0] for i in (-1, 0, 1))
+    y0, y1, y2 = (np.take_along_axis(y, middle + i, axis=1)[:, 0] for i in (-1, 0, 1))
+    with np.errstate(all="ignore"):
+        left, right = (y1 - y0) * (x1 - x2), (y1 - y2) * (x1 - x0)
+        top = x1 - 0.5 * (left * (x1 - x2) - right * (x1 - x0)) / (left - right)
+    return np.where(np.isfinite(top), top, x1)
 
 
 def _leaders(points: Floats, height: Floats, target: Indices) -> tuple[Floats, Floats, Indices]:

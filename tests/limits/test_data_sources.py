@@ -1,4 +1,4 @@
-"""No figure in ratings/ without document, edition, clause and evidence: walked in the raw files and in the loaders."""
+"""No figure in ratings/ without document, edition, clause, evidence: in the raw files and in the loaders."""
 
 from __future__ import annotations
 

@@ -7,14 +7,14 @@ from typing import Any
 
 import pytest
 
-from stresscheck.design.parts import Capacitor, Inductor, Resistor
+from stresscheck.design.parts import Capacitor, Inductor, Resistor, Valued
 from stresscheck.limits.families import load_families
 from stresscheck.limits.part_limits import limits_for
 from stresscheck.limits.policy import list_policies
 from stresscheck.limits.quantities import quantities_of
 from stresscheck.shipped import ratings_dir
 
-MODELS = {"capacitor": Capacitor, "inductor": Inductor, "resistor": Resistor}
+MODELS: dict[str, type[Valued]] = {"capacitor": Capacitor, "inductor": Inductor, "resistor": Resistor}
 PARTS = [
     (kind, name, table)
     for path in sorted((ratings_dir() / "parts").glob("*.toml"))

@@ -13,6 +13,7 @@ from stresscheck.limits.rules import Fraction, KelvinBelow
 
 NAMES = ("as-rated", "nasa-eee-inst-002", "src-benign", "src-severe", "uniform-50", "uniform-80")
 
+BELOW = "row.all.kelvin_below_maximum"
 HEAD = 'name = "own"\ntitle = "t"\ndocument = "d"\nedition = "e"\nsource = "s"\nevidence = "own decision"\n'
 ROW = (
     '[row.all]\nkind = "any"\nfamilies = []\nquantity = "any"\nallowed_fraction = 0.7\n'
@@ -48,17 +49,17 @@ def test_policy_filling_only_where_a_document_stands_behind(name: str) -> None:
 
 
 @pytest.mark.parametrize(
-    "policy,severe_or_benign",
-    [("src-severe", {"aluminium-electrolytic": 0.7, "ceramic": 0.6, "mica-glass": 0.6, "paper-film": 0.6, "variable-air": 0.6}),
-     ("src-benign", {"aluminium-electrolytic": 0.8, "ceramic": 0.7, "mica-glass": 0.7, "paper-film": 0.7, "variable-air": 0.7})],
-)  # fmt: skip
-def test_src_rows_carry_the_two_columns(policy: str, severe_or_benign: dict[str, float]) -> None:
+    "policy,electrolytic,others",
+    [("src-severe", 0.7, 0.6), ("src-benign", 0.8, 0.7)],
+)
+def test_src_rows_carry_the_two_columns(policy: str, electrolytic: float, others: float) -> None:
     """Source: Part Derating Parameters, System Reliability Center (Rome), capacitor rows."""
     loaded = load_policy(policy)
-    for family, fraction in severe_or_benign.items():
-        assert row(loaded, f"{family}-voltage").rule == Fraction(fraction)
-        below = 20.0 if family == "aluminium-electrolytic" else 10.0
-        assert row(loaded, f"{family}-temperature").rule == KelvinBelow(below)
+    assert row(loaded, "aluminium-electrolytic-voltage").rule == Fraction(electrolytic)
+    assert row(loaded, "aluminium-electrolytic-temperature").rule == KelvinBelow(20.0)
+    for family in ("ceramic", "mica-glass", "paper-film", "variable-air"):
+        assert row(loaded, f"{family}-voltage").rule == Fraction(others)
+        assert row(loaded, f"{family}-temperature").rule == KelvinBelow(10.0)
 
 
 @pytest.mark.parametrize("policy", ["src-severe", "src-benign"])
@@ -144,8 +145,8 @@ def test_load_policy_head_without_a_key_is_refused(key: str, tmp_path: Path) -> 
         ("allowed_fraction = 0.7", "allowed_fraction = true", ("out-of-range", "row.all.allowed_fraction")),
         ("allowed_fraction = 0.7", 'allowed_fraction = "70 %"', ("out-of-range", "row.all.allowed_fraction")),
         ("allowed_fraction = 0.7", "", ("conflicting-keys", "row.all")),
-        ("allowed_fraction = 0.7", 'allowed_fraction = 0.7\nkelvin_below_maximum = "5 K"', ("conflicting-keys", "row.all")),
-        ("allowed_fraction = 0.7", 'kelvin_below_maximum = "5 K"', ("conflicting-keys", "row.all.kelvin_below_maximum")),
+        ("clause", 'kelvin_below_maximum = "5 K"\nclause', ("conflicting-keys", "row.all")),
+        ("allowed_fraction = 0.7", 'kelvin_below_maximum = "5 K"', ("conflicting-keys", BELOW)),
         ('kind = "any"', 'kind = "valve"', ("wrong-type", "row.all.kind")),
         ('quantity = "any"', 'quantity = "volts"', ("wrong-type", "row.all.quantity")),
         ("families = []", "", ("missing-key", "row.all.families")),

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 import pytest
 
-from stresscheck.design.parts import CapacitorRating, DriveRating, InductorRating, ResistorRating
+from stresscheck.design.parts import CapacitorRating, DriveRating, InductorRating, ResistorRating, Table
 from stresscheck.limits.quantities import KINDS, QUANTITIES, quantities_of, quantity_of
 
-RATINGS = {
+RATINGS: dict[str, type[Table]] = {
     "capacitor": CapacitorRating,
     "inductor": InductorRating,
     "resistor": ResistorRating,

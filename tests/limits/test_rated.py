@@ -1,4 +1,4 @@
-"""Curves over frequency and temperature: closed forms, silence outside printed points, smallest value over a band."""
+"""Curves over frequency and temperature: closed forms, silence outside their points, smallest over a band."""
 
 from __future__ import annotations
 
@@ -21,7 +21,7 @@ def test_at_printed_points_gives_the_printed_values_exactly() -> None:
 
 
 def test_at_between_points_follows_the_power_law_of_its_piece() -> None:
-    """A straight line on log-log axes is v0 (f/f0)^s, s = log(v1/v0)/log(f1/f0): circuit-independent closed form."""
+    """A straight line on log-log axes is v0 (f/f0)^s, s = log(v1/v0)/log(f1/f0)."""
     curve = over_frequency([(1e4, 400.0), (1e6, 40.0)])
     asked = np.array([2e4, 1e5, 7e5])
     assert curve.at(asked) == pytest.approx(400.0 * (asked / 1e4) ** -0.5, rel=1e-13)
