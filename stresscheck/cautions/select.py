@@ -36,7 +36,7 @@ def _worst(
     largest: dict[str, Fact] = {}
     for fact in facts:
         held = largest.get(subject(fact))
-        if held is None or size(fact) < size(held):
+        if held is None or size(fact) > size(held):
             largest[subject(fact)] = fact
     for name in sorted(largest):
         yield largest[name]

@@ -10,6 +10,7 @@ from pathlib import Path
 from types import MappingProxyType
 from typing import Any
 
+from stresscheck.design.positions import key_lines
 from stresscheck.errors import InputError, Problem
 from stresscheck.units import UnitProblem, Wanted, parse
 
@@ -248,31 +249,10 @@ def _unreadable(name: str, found: str) -> Problem:
 
 
 def line_of(text: str, path: Sequence[str]) -> int | None:
-    """Line of a key: its table's header [a.b], then the key below it; the header where the key isn't found.
-
-    Looks for a key at the start of a line, which is how these files are written; None where nothing fits.
-    """
-    best, depth, table = None, 0, ()  # type: tuple[int | None, int, tuple[str, ...]]
-    for number, line in enumerate(text.splitlines(), start=1):
-        stripped = line.strip()
-        if stripped.startswith("["):
-            table = _header(stripped)
-            found = table
-        else:
-            found = (*table, stripped.partition("=")[0].strip().strip('"'))
-        if 0 < len(found) <= len(path) and tuple(path[: len(found)]) == found and len(found) > depth:
-            best, depth = number, len(found)
-    return best
-
-
-def _header(line: str) -> tuple[str, ...]:
-    """Path of a table header, empty where the line isn't one."""
-    names = []
-    try:
-        here: Any = tomllib.loads(line)
-    except (tomllib.TOMLDecodeError, RecursionError, ValueError):
-        return ()
-    while isinstance(here, dict) and here:
-        name, here = next(iter(here.items()))
-        names.append(name)
-    return tuple(names)
+    """Line of a key, or of the nearest table above it that the text has; None where it has none."""
+    lines = key_lines(text)
+    for count in range(len(path), 0, -1):
+        found = lines.get(tuple(path[:count]))
+        if found is not None:
+            return found
+    return None

@@ -18,9 +18,11 @@ What is offered decides how exactly a peak is met: stationary values of the func
 
 KEPT = 4
 """Starts kept per function."""
-SWEEPS = 6
+SWEEPS = 10
 SETTLED = 1e-11
 """A sweep that gains less than this, relative, ends a climb."""
+STRIDES = 0.5 * 2.0 ** np.arange(9)
+"""How far to go on along the way of a sweep, in parts of it."""
 FEW = 8
 """With more tries than this on an axis the peak is sought between them too; fewer are stationary values already."""
 
@@ -45,9 +47,10 @@ def climb(box: Box, evaluate: Evaluate, candidates: Candidates, starts: Floats) 
     points = starts[best.reshape(-1)].copy()
     height = values[best.reshape(-1), target]
     for sweep in range(SWEEPS):
-        before = height.copy()
+        before, left = height.copy(), points
         for axis in box.varying:
             points, height = _move(box, evaluate, candidates, points, target, height, axis)
+        points, height = _stride(box, evaluate, left, points, target, height)
         gain = height - before
         moving = gain > SETTLED * np.abs(height)
         if sweep == 1:
@@ -100,6 +103,30 @@ def _move(
     moved = points.copy()
     moved[better, axis] = tries[np.arange(len(points)), pick][better]
     return moved, np.where(better, top, height)
+
+
+def _stride(
+    box: Box, evaluate: Evaluate, left: Floats, points: Floats, target: Indices, height: Floats
+) -> tuple[Floats, Floats]:
+    """Go on in the direction in which a whole sweep has led: it lies along the ridge that single axes zigzag on.
+
+    Source: pattern search, Hooke and Jeeves 1961.
+    """
+    way = points - left
+    moving = np.flatnonzero(np.abs(way).sum(axis=1) > 0.0)
+    if len(box.varying) < 2 or not moving.size:
+        return points, height
+    far = points[moving, None, :] + way[moving, None, :] * STRIDES[:, None]
+    far = np.clip(far, box.low, box.high)
+    values = _clean(evaluate(far.reshape(-1, points.shape[1]))).reshape(len(moving), len(STRIDES), -1)
+    mine = np.take_along_axis(values, target[moving, None, None], axis=2)[:, :, 0]
+    pick = mine.argmax(axis=1)
+    top = mine[np.arange(len(moving)), pick]
+    better = top > height[moving]
+    points, height = points.copy(), height.copy()
+    points[moving[better]] = far[np.arange(len(moving)), pick][better]
+    height[moving[better]] = top[better]
+    return points, height
 
 
 def _heights(evaluate: Evaluate, points: Floats, target: Indices, axis: int, tries: Floats) -> Floats:

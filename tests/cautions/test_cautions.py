@@ -178,6 +178,10 @@ def test_stored_energy_state_that_fires_counts_before_one_with_more_energy() -> 
     assert "in state unloaded" in one("stored-energy.C1", quiet, firing).text
 
 
+def test_stored_energy_counts_trapped_dc_that_outlasts_the_peak() -> None:
+    assert one("stored-energy.C1", cap(1e-5, 10.0, volt_dc_trapped=-400.0)).value == pytest.approx(0.8)
+
+
 @pytest.mark.parametrize("family,named", [("electrolytic", True), ("polypropylene film", False), ("", False)])
 def test_stored_energy_of_electrolytics_says_that_voltage_recovers(family: str, named: bool) -> None:
     found = one("stored-energy.C1", cap(1e-3, 400.0, kind_family=family))
@@ -196,6 +200,7 @@ def test_stored_energy_of_electrolytics_says_that_voltage_recovers(family: str, 
         (0.1e-6, 449.0, False),
         (0.11e-6, 450.0, True),
         (0.0999e-6, 450.0, False),
+        (45e-6 / 512.0, 512.0, False),
         (45.1e-6 / 450.1, 450.1, True),
         (44.9e-6 / 450.1, 450.1, False),
         (45.1e-6 / 15e3, 15e3, True),
@@ -322,8 +327,9 @@ EVERYTHING = (
 def test_cautions_are_ordered_by_severity_then_subject() -> None:
     found = run(*EVERYTHING, high=1e6)
     order = {
-        "touch-voltage": 0, "unknown-voltage": 1, "unknown-charge": 1, "stored-energy": 2, "trapped-dc": 3, "no-discharge-path": 3,
-        "rf-burn": 4, "stored-charge": 5, "slow-discharge": 6, "discharge-time-unknown": 6, "touch-notice": 7,
+        "touch-voltage": 0, "unknown-voltage": 1, "unknown-charge": 1, "stored-energy": 2,
+        "trapped-dc": 3, "no-discharge-path": 3, "rf-burn": 4, "stored-charge": 5,
+        "slow-discharge": 6, "discharge-time-unknown": 6, "touch-notice": 7,
     }  # fmt: skip
     keys = [(order[caution.id.split(".")[0]], caution.subject) for caution in found]
     assert keys == sorted(keys)
