@@ -68,9 +68,7 @@ class DataFile:
                 self.problem("missing-key", path, "nothing", f"text: {path[-1]}", f"add {path[-1]}")
             return ""
         if not isinstance(value, str) or not value.strip():
-            self.problem(
-                "wrong-type", path, repr(value), "text that isn't blank", f"write {path[-1]} as text"
-            )
+            self.problem("wrong-type", path, repr(value), "text that isn't blank", f"write {path[-1]} as text")
             return ""
         if not value.isprintable():
             self.problem("bad-text", path, repr(value), "printable characters", "take the others out")
@@ -92,9 +90,7 @@ class DataFile:
         value = self.value(*path)
         if value is None:
             return ()
-        if not isinstance(value, list) or not all(
-            isinstance(item, str) and item.isprintable() for item in value
-        ):
+        if not isinstance(value, list) or not all(isinstance(item, str) and item.isprintable() for item in value):
             self.problem("wrong-type", path, repr(value), "a list of texts", 'write ["...", "..."]')
             return ()
         return tuple(value)
@@ -121,17 +117,13 @@ class DataFile:
                 found[name] = value
             else:
                 where = ".".join((*path, "NAME"))
-                self.problem(
-                    "wrong-type", (*path, name), repr(value), f"a table [{where}]", "write it as a table"
-                )
+                self.problem("wrong-type", (*path, name), repr(value), f"a table [{where}]", "write it as a table")
         return found
 
     def tables(self, *path: str) -> Sequence[Mapping[str, Any]]:
         """A list of tables; empty where it is missing or wrong."""
         value = self.value(*path)
-        if value is not None and not (
-            isinstance(value, list) and all(isinstance(item, dict) for item in value)
-        ):
+        if value is not None and not (isinstance(value, list) and all(isinstance(item, dict) for item in value)):
             self.problem("wrong-type", path, repr(value), "a list of tables", "write [{ ... }]")
             return ()
         return value or ()
@@ -140,15 +132,11 @@ class DataFile:
         """A plain number from 0 to 1; None where it is missing or wrong."""
         value = self.value(*path)
         if isinstance(value, bool) or not isinstance(value, int | float) or not 0.0 <= value <= 1.0:
-            self.problem(
-                "out-of-range", path, repr(value), "a number from 0 to 1", "0.6 stands for 60 % of it"
-            )
+            self.problem("out-of-range", path, repr(value), "a number from 0 to 1", "0.6 stands for 60 % of it")
             return None
         return float(value)
 
-    def quantity(
-        self, *path: str, unit: str, least: float = -math.inf, absolute: bool = False
-    ) -> float | None:
+    def quantity(self, *path: str, unit: str, least: float = -math.inf, absolute: bool = False) -> float | None:
         """A quantity in SI `unit` ("" for a plain number), at least `least`; None where it can't be read.
 
         `absolute`: a temperature, which may also be written in degC; otherwise "K" is a difference.
@@ -158,9 +146,7 @@ class DataFile:
     def pairs(self, *path: str, units: tuple[str, str]) -> tuple[tuple[float, float], ...]:
         """A list of pairs in the units of its columns, "K" for temperatures; empty where one is wrong."""
         value = self.value(*path)
-        if not isinstance(value, list) or not all(
-            isinstance(item, list) and len(item) == 2 for item in value
-        ):
+        if not isinstance(value, list) or not all(isinstance(item, list) and len(item) == 2 for item in value):
             self.problem("wrong-type", path, repr(value), "a list of pairs", "write [[..., ...], [..., ...]]")
             return ()
         found = []
@@ -176,9 +162,7 @@ class DataFile:
     ) -> float | None:
         if unit == "":
             return self._plain(path, value)
-        wanted = Wanted(
-            f"a quantity in {unit}", unit, least, math.inf, _EXAMPLE.get(unit, f"1 {unit}"), absolute
-        )
+        wanted = Wanted(f"a quantity in {unit}", unit, least, math.inf, _EXAMPLE.get(unit, f"1 {unit}"), absolute)
         if not isinstance(value, str):
             expected = f'text with a unit, such as "{wanted.example}"'
             self.problem("wrong-type", path, repr(value), expected, "write number and unit in quotes")
@@ -191,9 +175,7 @@ class DataFile:
 
     def _plain(self, path: tuple[str, ...], value: Any) -> float | None:
         if isinstance(value, bool) or not isinstance(value, int | float) or not math.isfinite(value):
-            self.problem(
-                "wrong-type", path, repr(value), "a plain number", "write it without quotes and unit"
-            )
+            self.problem("wrong-type", path, repr(value), "a plain number", "write it without quotes and unit")
             return None
         return float(value)
 

@@ -46,10 +46,7 @@ def family_matters(policy: Policy, kind: str, quantity: str) -> bool:
     shared = [row.rule.value for row in rows if not row.families and isinstance(row.rule, Fraction)]
     strictest = min(shared, default=None)
     return any(
-        strictest is None
-        or row.up_to is not None
-        or not isinstance(row.rule, Fraction)
-        or row.rule.value < strictest
+        strictest is None or row.up_to is not None or not isinstance(row.rule, Fraction) or row.rule.value < strictest
         for row in rows
         if row.families
     )
@@ -99,7 +96,5 @@ def _unknown_family(policy: Policy, kind: str, name: str, family: str | None, qu
         found = f"{kind}.{name}.family isn't given"
     else:
         close = families.nearest(kind, family)
-        found = f"{kind}.{name}.family = {family!r} isn't known" + (
-            f" (did you mean {close}?)" if close else ""
-        )
+        found = f"{kind}.{name}.family = {family!r} isn't known" + (f" (did you mean {close}?)" if close else "")
     return f"{found}, and {policy.name} goes by family for {quantity}; known: {known}"

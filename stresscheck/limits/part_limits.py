@@ -125,9 +125,7 @@ def _full(record: Quantity, reading: Reading, source: str) -> Limit:
     )
 
 
-def _derated(
-    record: Quantity, reading: Reading, source: str, derating: Derating, kelvin: float | None
-) -> list[Limit]:
+def _derated(record: Quantity, reading: Reading, source: str, derating: Derating, kelvin: float | None) -> list[Limit]:
     """One limit for each row that speaks; a row that is silent for this rating gives none."""
     assert reading.curve is not None
     found = []

@@ -116,6 +116,4 @@ def _read(path: Path) -> tuple[Policy, str]:
 
 def _check_rows(file: DataFile, rows: tuple[Row, ...]) -> None:
     if not rows and not file.problems:
-        file.problem(
-            "missing-key", ("row",), "no rows", "at least one table [row.NAME]", "add the document's rows"
-        )
+        file.problem("missing-key", ("row",), "no rows", "at least one table [row.NAME]", "add the document's rows")

@@ -168,16 +168,12 @@ def _read_rule(file: DataFile, at: tuple[str, str], quantity: str) -> Rule | Non
     given = [key for key in RULE_KEYS if file.has(*at, key)]
     if len(given) != 1:
         found = " and ".join(given) or "no rule"
-        file.problem(
-            "conflicting-keys", at, found, f"exactly one of {', '.join(RULE_KEYS)}", "keep one rule a row"
-        )
+        file.problem("conflicting-keys", at, found, f"exactly one of {', '.join(RULE_KEYS)}", "keep one rule a row")
         return None
     rule = _rule(file, at, given[0])
     if rule is not None and quantity and rule.for_temperature != (quantity == "temperature"):
         wanted = "a rule for temperatures" if quantity == "temperature" else "a fraction"
-        file.problem(
-            "conflicting-keys", (*at, given[0]), given[0], f"{wanted} for {quantity}", "change one of them"
-        )
+        file.problem("conflicting-keys", (*at, given[0]), given[0], f"{wanted} for {quantity}", "change one of them")
         return None
     return rule
 
@@ -208,9 +204,7 @@ def _fraction_rule(file: DataFile, at: tuple[str, str]) -> Rule | None:
     file.known_keys(path, {"by", "points", "below_first"})
     file.one_of(*path, "by", among=("temperature",))
     points = file.pairs(*path, "points", units=("K", ""))
-    below = (
-        file.one_of(*path, "below_first", among=("holds", "silent")) if file.has(*path, "below_first") else ""
-    )
+    below = file.one_of(*path, "below_first", among=("holds", "silent")) if file.has(*path, "below_first") else ""
     ordered = all(a[0] < b[0] for a, b in pairwise(points))
     if len(points) < 2 or not ordered or not all(0.0 <= value <= 1.0 for _, value in points):
         expected = "two or more points [temperature, fraction], rising temperatures, fractions from 0 to 1"

@@ -87,9 +87,7 @@ QUANTITIES: tuple[Quantity, ...] = (
     Quantity("inductor", "dissipation", "W", "dissipation", ("dissipation",)),
     Quantity("inductor", "temperature", "K", "temperature", ("temperature",)),
     Quantity("resistor", "dissipation", "W", "dissipation", ("dissipation",), _RESISTOR_POWER),
-    Quantity(
-        "resistor", "voltage_peak", "V", "peak voltage, size of DC + AC", ("voltage_peak", "voltage_dc")
-    ),
+    Quantity("resistor", "voltage_peak", "V", "peak voltage, size of DC + AC", ("voltage_peak", "voltage_dc")),
     Quantity("resistor", "voltage_rms", "V", "RMS voltage", ("voltage_rms",)),
     Quantity("resistor", "temperature", "K", "temperature", ("temperature",)),
     Quantity("resistor", "pulse_energy", "J", "energy of a pulse", ("pulse_energy",)),

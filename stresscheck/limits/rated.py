@@ -96,9 +96,7 @@ def over_frequency(points: Sequence[tuple[float, float]]) -> Rated:
     hertz = np.array([point[0] for point in points], dtype=np.float64)
     value = np.array([point[1] for point in points], dtype=np.float64)
     if not (len(points) >= 2 and np.all(np.diff(hertz) > 0.0) and hertz[0] > 0.0 and np.all(value > 0.0)):
-        raise ValueError(
-            "a curve over frequency needs two or more points, rising frequencies, values above zero"
-        )
+        raise ValueError("a curve over frequency needs two or more points, rising frequencies, values above zero")
     return Rated(read_only(hertz), read_only(value))
 
 

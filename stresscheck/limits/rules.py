@@ -147,9 +147,7 @@ class KelvinBelow:
         return f"{celsius(rated)} - {self.kelvin:g} K"
 
     def describe(self) -> str:
-        return (
-            f"{self.kelvin:g} K below the highest temperature" if self.kelvin else "the highest temperature"
-        )
+        return f"{self.kelvin:g} K below the highest temperature" if self.kelvin else "the highest temperature"
 
 
 @dataclass(frozen=True, slots=True)

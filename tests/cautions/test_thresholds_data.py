@@ -54,15 +54,19 @@ WITHOUT_FIGURES = {"before-work", "dc-trapped", "wrong-dielectric", "below-reson
 CURVES = {"altitude", "air-gap-high-frequency"}
 
 
-@pytest.mark.parametrize("name,figure,value,unit,document,evidence", ROWS, ids=[row[0] for row in ROWS])
+@pytest.mark.parametrize(
+    ("name", "figure", "value", "unit", "document", "evidence"), ROWS, ids=[row[0] for row in ROWS]
+)
 def test_threshold_carries_its_figure_and_its_document(
     name: str, figure: str, value: float, unit: str, document: str, evidence: str
 ) -> None:
     threshold = load_thresholds()[name]
     assert threshold.figure(figure) == pytest.approx(value, rel=1e-15)
     assert threshold.figures[figure].unit == unit
-    assert document in threshold.source.document and threshold.source.evidence == evidence
-    assert document in threshold.sources() and threshold.not_covered
+    assert document in threshold.source.document
+    assert threshold.source.evidence == evidence
+    assert document in threshold.sources()
+    assert threshold.not_covered
 
 
 def test_thresholds_are_exactly_those_of_the_table() -> None:
@@ -72,23 +76,24 @@ def test_thresholds_are_exactly_those_of_the_table() -> None:
 def test_threshold_curves_have_their_ends() -> None:
     data = load_thresholds()
     gap = data["air-gap-high-frequency"].curves["distance"]
-    assert (
-        gap[0] == pytest.approx((600.0, 0.065e-3))
-        and gap[-1] == pytest.approx((2000.0, 11e-3))
-        and len(gap) == 8
-    )
+    assert gap[0] == pytest.approx((600.0, 0.065e-3))
+    assert gap[-1] == pytest.approx((2000.0, 11e-3))
+    assert len(gap) == 8
     factors = data["altitude"].curves["factors"]
-    assert factors[0] == (3000.0, 1.14) and factors[-1] == (10000.0, 3.02) and len(factors) == 8
+    assert factors[0] == (3000.0, 1.14)
+    assert factors[-1] == (10000.0, 3.02)
+    assert len(factors) == 8
 
 
 def test_hazards_name_thresholds_that_exist() -> None:
     known = set(load_thresholds())
     for hazard in HAZARDS:
-        assert hazard.thresholds and set(hazard.thresholds) <= known
+        assert hazard.thresholds
+        assert set(hazard.thresholds) <= known
 
 
 @pytest.mark.parametrize(
-    "name,unit",
+    ("name", "unit"),
     [
         ("voltage_from", "V"),
         ("time_low_voltage", "s"),
@@ -109,7 +114,7 @@ ENTRY = (
 
 
 @pytest.mark.parametrize(
-    "old,new,expected",
+    ("old", "new", "expected"),
     [
         ('"50 V"', '"50"', ("bad-quantity", "threshold.a.figures.voltage")),
         ('"50 V"', '"50 A"', ("wrong-dimension", "threshold.a.figures.voltage")),
@@ -144,9 +149,7 @@ def test_load_thresholds_same_id_in_two_files_is_refused(tmp_path: Path) -> None
         (tmp_path / name).write_text(ENTRY, encoding="utf-8")
     with pytest.raises(InputError) as caught:
         load_thresholds(tmp_path)
-    assert [(problem.code, problem.file) for problem in caught.value.problems] == [
-        ("duplicate-name", "b.toml")
-    ]
+    assert [(problem.code, problem.file) for problem in caught.value.problems] == [("duplicate-name", "b.toml")]
 
 
 def test_cautions_for_thresholds_that_lack_one_is_refused(tmp_path: Path) -> None:

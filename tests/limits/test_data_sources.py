@@ -22,9 +22,7 @@ FIGURE = re.compile(r"^[+-]?[0-9.]+([eE][+-]?[0-9]+)? ?([A-Za-z%/^0-9]+)?$|^[0-9
 NOT_FIGURES = {*SOURCE, "source", "title", "name", "notes", "says", "basis"}
 
 
-def figures_without_source(
-    data: dict[str, Any], path: str = "", above: frozenset[str] = frozenset()
-) -> list[str]:
+def figures_without_source(data: dict[str, Any], path: str = "", above: frozenset[str] = frozenset()) -> list[str]:
     """Paths of figures whose table, with the tables above it, lacks a part of the source."""
     has = above | {key for key in SOURCE if isinstance(data.get(key), str) and data[key].strip()}
     found = []
@@ -66,13 +64,16 @@ def test_data_file_every_figure_carries_its_source(path: Path) -> None:
 @pytest.mark.parametrize("path", [p for p in FILES if not is_parts(p)], ids=lambda p: p.stem)
 def test_data_file_every_evidence_word_is_known(path: Path) -> None:
     words = re.findall(r'\bevidence = "([^"]*)"', path.read_text(encoding="utf-8"))
-    assert words and set(words) <= set(EVIDENCE) - {"invented"}
+    assert words
+    assert set(words) <= set(EVIDENCE) - {"invented"}
 
 
 @pytest.mark.parametrize("path", [p for p in FILES if is_parts(p)], ids=lambda p: p.stem)
 def test_parts_file_every_part_is_marked_invented(path: Path) -> None:
     data = parsed(path)
-    assert data["invented"] is True and data["evidence"] == "invented" and "invented" in data["source"]
+    assert data["invented"] is True
+    assert data["evidence"] == "invented"
+    assert "invented" in data["source"]
     for kind in ("capacitor", "inductor", "resistor"):
         for part in data.get(kind, {}).values():
             assert "invented" in part["rating"]["source"]
@@ -90,9 +91,7 @@ def test_walker_source_taken_out_of_a_row_is_noticed(lost: str) -> None:
 
 
 def rows_of(path: Path) -> list[tuple[str, str]]:
-    return [
-        (table, name) for table in ("row", "reference", "threshold") for name in parsed(path).get(table, {})
-    ]
+    return [(table, name) for table in ("row", "reference", "threshold") for name in parsed(path).get(table, {})]
 
 
 def without(text: str, table: str, name: str, key: str) -> str:
@@ -108,7 +107,7 @@ POLICY_ROWS = [(p, *row) for p in FILES if p.parent.name == "policies" for row i
 
 
 @pytest.mark.parametrize("key", ["clause", "evidence"])
-@pytest.mark.parametrize("path,table,name", POLICY_ROWS, ids=lambda v: v.stem if isinstance(v, Path) else v)
+@pytest.mark.parametrize(("path", "table", "name"), POLICY_ROWS, ids=lambda v: v.stem if isinstance(v, Path) else v)
 def test_load_policy_row_without_clause_or_evidence_is_refused(
     path: Path, table: str, name: str, key: str, tmp_path: Path
 ) -> None:
@@ -123,7 +122,7 @@ THRESHOLD_ROWS = [(p, name) for p in FILES if p.parent.name == "thresholds" for 
 
 
 @pytest.mark.parametrize("key", SOURCE)
-@pytest.mark.parametrize("path,name", THRESHOLD_ROWS, ids=lambda v: v.stem if isinstance(v, Path) else v)
+@pytest.mark.parametrize(("path", "name"), THRESHOLD_ROWS, ids=lambda v: v.stem if isinstance(v, Path) else v)
 def test_load_thresholds_row_without_part_of_its_source_is_refused(
     path: Path, name: str, key: str, tmp_path: Path
 ) -> None:

@@ -11,7 +11,7 @@ from stresscheck.limits.families import load_families
 
 
 @pytest.mark.parametrize(
-    "kind,text,name",
+    ("kind", "text", "name"),
     [
         ("capacitor", "polypropylene film", "polypropylene film"),
         ("capacitor", "Polypropylene-Film", "polypropylene film"),
@@ -28,7 +28,8 @@ from stresscheck.limits.families import load_families
 )
 def test_find_alias_gives_the_family(kind: str, text: str, name: str) -> None:
     family = load_families().find(kind, text)
-    assert family is not None and family.name == name
+    assert family is not None
+    assert family.name == name
 
 
 @pytest.mark.parametrize("text", [None, "", "unobtainium", "air core"])
@@ -39,7 +40,8 @@ def test_find_unknown_or_missing_gives_none(text: str | None) -> None:
 def test_belongs_to_wider_family_and_to_rows_for_all() -> None:
     family = load_families().find("capacitor", "PP film")
     assert family is not None
-    assert family.belongs_to(("paper", "plastic film")) and family.belongs_to(())
+    assert family.belongs_to(("paper", "plastic film"))
+    assert family.belongs_to(())
     assert not family.belongs_to(("ceramic",))
 
 

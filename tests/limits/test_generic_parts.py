@@ -24,10 +24,8 @@ PARTS = [
 ]
 
 
-@pytest.mark.parametrize("kind,name,table", PARTS, ids=lambda v: v if isinstance(v, str) else "")
-def test_generic_part_has_every_rating_that_sign_off_needs(
-    kind: str, name: str, table: dict[str, Any]
-) -> None:
+@pytest.mark.parametrize(("kind", "name", "table"), PARTS, ids=lambda v: v if isinstance(v, str) else "")
+def test_generic_part_has_every_rating_that_sign_off_needs(kind: str, name: str, table: dict[str, Any]) -> None:
     part = MODELS[kind].model_validate({**table, "between": ["a", "b"]})
     for policy in list_policies():
         for quantity in quantities_of(kind):
@@ -35,10 +33,11 @@ def test_generic_part_has_every_rating_that_sign_off_needs(
             assert found.outcome in ("limits", "not-asked"), (policy.name, quantity.name, found.why)
 
 
-@pytest.mark.parametrize("kind,name,table", PARTS, ids=lambda v: v if isinstance(v, str) else "")
+@pytest.mark.parametrize(("kind", "name", "table"), PARTS, ids=lambda v: v if isinstance(v, str) else "")
 def test_generic_part_has_a_known_family(kind: str, name: str, table: dict[str, Any]) -> None:
     family = load_families().find(kind, table["family"])
-    assert family is not None and family.name == table["family"], name
+    assert family is not None, name
+    assert family.name == table["family"], name
 
 
 def test_generic_part_names_are_unique() -> None:

@@ -82,7 +82,8 @@ def test_limit_keeps_the_rating_as_written_and_its_source() -> None:
     part = capacitor(voltage_dc="1.0 kV", source="maker's sheet, revision 3, p. 4")
     (limit,) = ask("as-rated", "capacitor", part, "voltage_peak").limits
     assert (limit.rated_text, limit.rating_source) == ("1.0 kV", "maker's sheet, revision 3, p. 4")
-    assert limit.constant and limit.silent_text() == ""
+    assert limit.constant
+    assert limit.silent_text() == ""
 
 
 def test_limit_without_document_says_that_none_is_named() -> None:
@@ -94,7 +95,7 @@ def test_limit_without_document_says_that_none_is_named() -> None:
 
 
 @pytest.mark.parametrize(
-    "kind,part,expected",
+    ("kind", "part", "expected"),
     [
         ("capacitor", capacitor(), {"voltage_peak", "voltage_rms"}),
         ("capacitor", capacitor(voltage_dc="1 kV"), {"voltage_rms"}),
@@ -115,21 +116,21 @@ def test_limit_without_document_says_that_none_is_named() -> None:
 )  # fmt: skip
 def test_missing_rating_is_reported_once_by_its_group(kind: str, part: Any, expected: set[str]) -> None:
     found = {
-        quantity.name: limits_for(
-            load_policy("as-rated"), kind, "X", part, quantity.name, kelvin=300.0, full=False
-        )
+        quantity.name: limits_for(load_policy("as-rated"), kind, "X", part, quantity.name, kelvin=300.0, full=False)
         for quantity in quantities_of(kind)
     }
     assert {name for name, limits in found.items() if limits.outcome == "no-rating"} == expected
     for name in expected:
-        assert found[name].required and f"{kind}.X.rating" in found[name].why
+        assert found[name].required
+        assert f"{kind}.X.rating" in found[name].why
     others = {limits.outcome for name, limits in found.items() if name not in expected}
     assert others <= {"limits", "not-asked"}
 
 
 def test_missing_group_beside_a_given_rating_keeps_the_known_limit() -> None:
     found = ask("as-rated", "inductor", inductor("ferrite", current_peak="2 A"), "current_peak")
-    assert found.outcome == "no-rating" and "saturation_current" in found.why
+    assert found.outcome == "no-rating"
+    assert "saturation_current" in found.why
     assert [limit.rating_key for limit in found.limits] == ["current_peak"]
 
 
@@ -144,8 +145,10 @@ def test_part_without_rating_table_is_asked_only_for_what_sign_off_needs() -> No
 
 def test_rating_by_temperature_without_temperature_names_what_to_give() -> None:
     found = ask("as-rated", "resistor", resistor(dissipation=LINE), "dissipation")
-    assert found.outcome == "no-rating" and found.limits == ()
-    assert "thermal_resistance" in found.why and "ambient" in found.why
+    assert found.outcome == "no-rating"
+    assert found.limits == ()
+    assert "thermal_resistance" in found.why
+    assert "ambient" in found.why
 
 
 def test_rating_by_temperature_is_read_at_the_part() -> None:
@@ -156,13 +159,15 @@ def test_rating_by_temperature_is_read_at_the_part() -> None:
 @pytest.mark.parametrize("kelvin", [340.0, 430.0])
 def test_rating_by_temperature_outside_its_points_gives_no_limit(kelvin: float) -> None:
     found = ask("as-rated", "resistor", resistor(dissipation=LINE), "dissipation", kelvin=kelvin)
-    assert found.outcome == "no-rating" and "only, and the part reaches" in found.why
+    assert found.outcome == "no-rating"
+    assert "only, and the part reaches" in found.why
 
 
 @pytest.mark.parametrize("kelvin", [math.nan, math.inf])
 def test_temperature_that_is_no_number_counts_as_unknown(kelvin: float) -> None:
     found = ask("as-rated", "resistor", resistor(dissipation=LINE), "dissipation", kelvin=kelvin)
-    assert found.outcome == "no-rating" and "isn't known" in found.why
+    assert found.outcome == "no-rating"
+    assert "isn't known" in found.why
 
 
 def test_nasa_parallel_line_reaches_zero_at_t2() -> None:
@@ -180,7 +185,8 @@ def test_nasa_chip_film_power_falls_to_zero_at_118_degc() -> None:
         found = ask("nasa-eee-inst-002", "resistor", part, "dissipation", kelvin=celsius + 273.15)
         assert allowed(found)["dissipation"] == pytest.approx(expected, abs=1e-12)
     beyond = ask("nasa-eee-inst-002", "resistor", part, "dissipation", kelvin=391.2)
-    assert beyond.outcome == "not-checked" and "118 degC" in beyond.why
+    assert beyond.outcome == "not-checked"
+    assert "118 degC" in beyond.why
 
 
 def test_nasa_solid_tantalum_falls_from_70_to_110_degc() -> None:
@@ -192,9 +198,7 @@ def test_nasa_solid_tantalum_falls_from_70_to_110_degc() -> None:
     assert ask("nasa-eee-inst-002", "capacitor", part, "voltage_peak", kelvin=383.2).outcome == "not-checked"
 
 
-@pytest.mark.parametrize(
-    "kelvin,outcome", [(383.15, "limits"), (383.2, "not-checked"), (None, "not-checked")]
-)
+@pytest.mark.parametrize(("kelvin", "outcome"), [(383.15, "limits"), (383.2, "not-checked"), (None, "not-checked")])
 def test_nasa_ceramic_row_ends_at_110_degc(kelvin: float | None, outcome: str) -> None:
     part = capacitor("C0G", voltage_dc="100 V")
     found = ask("nasa-eee-inst-002", "capacitor", part, "voltage_peak", kelvin=kelvin)
@@ -213,7 +217,7 @@ def test_nasa_coil_class_180_shows_both_rows_and_the_lower_counts() -> None:
     assert all(limit.allowed_fraction is None for limit in found.limits)
 
 
-@pytest.mark.parametrize("maximum,hot_spot", [(85, 65), (105, 85), (125, 105), (130, 110), (150, 130)])
+@pytest.mark.parametrize(("maximum", "hot_spot"), [(85, 65), (105, 85), (125, 105), (130, 110), (150, 130)])
 def test_nasa_coil_classes_have_their_hot_spots(maximum: int, hot_spot: int) -> None:
     """EEE-INST-002 section M1, table 4 (transcription)."""
     found = ask("nasa-eee-inst-002", "inductor", inductor(temperature=f"{maximum} degC"), "temperature")
@@ -251,7 +255,7 @@ def test_other_policies_leave_resistor_voltage_to_its_rating() -> None:
 
 
 @pytest.mark.parametrize(
-    "policy,quantity,rating,filled",
+    ("policy", "quantity", "rating", "filled"),
     [
         ("nasa-eee-inst-002", "voltage_peak", {"voltage_dc": "1 kV"}, False),
         ("nasa-eee-inst-002", "voltage_rms", {"voltage_rms": "1 kV"}, True),
@@ -270,7 +274,8 @@ def test_row_that_the_document_lacks_is_filled_and_says_so(
     text = f"{policy} has no row for {quantity} of {family}; filled from uniform-80"
     assert limit.derating_source.startswith(text) is filled
     if filled:
-        assert limit.allowed_fraction == 0.8 and "own decision" in limit.derating_source
+        assert limit.allowed_fraction == 0.8
+        assert "own decision" in limit.derating_source
 
 
 @pytest.mark.parametrize("family", ["vacuum", "gas", "other", "mica"])
@@ -281,12 +286,14 @@ def test_nasa_capacitor_family_without_row_is_filled(family: str) -> None:
 
 
 @pytest.mark.parametrize(
-    "family,hint", [(None, "isn't given"), ("polypropilene film", "did you mean polypropylene film?")]
+    ("family", "hint"), [(None, "isn't given"), ("polypropilene film", "did you mean polypropylene film?")]
 )
 def test_family_that_is_not_known_is_not_guessed(family: str | None, hint: str) -> None:
     part = capacitor(family, voltage_dc="1 kV", current_rms="3 A")
     found = ask("src-severe", "capacitor", part, "voltage_peak")
-    assert found.outcome == "not-checked" and hint in found.why and "ceramic" in found.why
+    assert found.outcome == "not-checked"
+    assert hint in found.why
+    assert "ceramic" in found.why
     assert ask("src-severe", "capacitor", part, "current_rms").outcome == "limits"
     assert ask("uniform-80", "capacitor", part, "voltage_peak").outcome == "limits"
 
@@ -308,11 +315,9 @@ def test_policy_without_row_and_without_filling_is_not_checked(tmp_path: Path) -
     policy = load_policy("own.toml", tmp_path)
     part = capacitor(voltage_dc="1 kV", current_rms="3 A")
     found = limits_for(policy, "capacitor", "X", part, "current_rms", kelvin=None, full=False)
-    assert (found.outcome, found.limits) == ("not-checked", ()) and "own has no row" in found.why
-    assert (
-        limits_for(policy, "capacitor", "X", part, "voltage_peak", kelvin=None, full=False).outcome
-        == "limits"
-    )
+    assert (found.outcome, found.limits) == ("not-checked", ())
+    assert "own has no row" in found.why
+    assert limits_for(policy, "capacitor", "X", part, "voltage_peak", kelvin=None, full=False).outcome == "limits"
 
 
 def test_fault_state_takes_full_ratings_of_every_policy() -> None:
@@ -322,7 +327,8 @@ def test_fault_state_takes_full_ratings_of_every_policy() -> None:
             found = limits_for(policy, "capacitor", "X", part, quantity, kelvin=None, full=True)
             (limit,) = found.limits
             assert limit.allowed(KHZ)[0] == limit.rated(KHZ)[0] == pytest.approx(value, rel=1e-15)
-            assert limit.allowed_fraction == 1.0 and "full rating" in limit.derating_source
+            assert limit.allowed_fraction == 1.0
+            assert "full rating" in limit.derating_source
 
 
 def test_fault_state_does_not_ask_for_the_family() -> None:
@@ -338,13 +344,15 @@ def test_steps_redo_the_limit_by_numbers() -> None:
     (limit,) = ask("src-severe", "capacitor", part, "voltage_rms").limits
     rated, derated = limit.steps(85e3)
     assert (rated.value, rated.unit, rated.source) == (400.0, "V", "sheet, p. 4")
-    assert "85 kHz 400 V" in rated.numbers and "f = 85000 Hz" in rated.numbers
+    assert "85 kHz 400 V" in rated.numbers
+    assert "f = 85000 Hz" in rated.numbers
     assert (derated.formula, derated.numbers) == ("fraction x V_rated", "0.8 x 400 V")
-    assert derated.value == pytest.approx(320.0) and derated.source == limit.derating_source
+    assert derated.value == pytest.approx(320.0)
+    assert derated.source == limit.derating_source
 
 
 @pytest.mark.parametrize(
-    "policy,numbers",
+    ("policy", "numbers"),
     [
         ("src-severe", ["180 degC - 20 K"]),
         ("nasa-eee-inst-002", ["0.75 x 180 degC - 10 K", "class 180 degC: 160 degC - 10 K"]),
@@ -365,9 +373,7 @@ def test_steps_where_the_curve_is_silent_are_none() -> None:
 
 @given(
     st.sampled_from([policy.name for policy in list_policies()]),
-    st.sampled_from(
-        ["ceramic", "mica", "polyester", "vacuum", "electrolytic", "solid tantalum", "paper", "other"]
-    ),
+    st.sampled_from(["ceramic", "mica", "polyester", "vacuum", "electrolytic", "solid tantalum", "paper", "other"]),
     st.floats(1.0, 1e5),
     st.one_of(st.none(), st.floats(200.0, 500.0)),
 )
@@ -377,7 +383,8 @@ def test_law_derated_limit_never_exceeds_the_rating(
     part = capacitor(family, voltage_dc=f"{volt:.6g} V", voltage_rms=CURVE, temperature="125 degC")
     for quantity in ("voltage_peak", "voltage_rms", "temperature"):
         found = ask(policy, "capacitor", part, quantity, kelvin)
-        assert found.outcome in OUTCOMES and (found.why != "") is (found.outcome != "limits")
+        assert found.outcome in OUTCOMES
+        assert (found.why != "") is (found.outcome != "limits")
         for limit in found.limits:
             hertz = np.array([1.0, 2e4, 1.9e5])
             assert np.all(limit.allowed(hertz) <= limit.rated(hertz) * (1.0 + 1e-12))
@@ -392,4 +399,5 @@ def test_law_stricter_uniform_policy_is_stricter_everywhere() -> None:
             float(ask(p, "capacitor", part, quantity).limits[0].allowed(KHZ)[0])
             for p in ("uniform-50", "uniform-80", "as-rated")
         ]
-        assert levels == sorted(levels) and len(set(levels)) == 3
+        assert levels == sorted(levels)
+        assert len(set(levels)) == 3

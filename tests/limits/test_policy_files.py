@@ -49,7 +49,7 @@ def test_policy_filling_only_where_a_document_stands_behind(name: str) -> None:
 
 
 @pytest.mark.parametrize(
-    "policy,electrolytic,others",
+    ("policy", "electrolytic", "others"),
     [("src-severe", 0.7, 0.6), ("src-benign", 0.8, 0.7)],
 )
 def test_src_rows_carry_the_two_columns(policy: str, electrolytic: float, others: float) -> None:
@@ -66,15 +66,14 @@ def test_src_rows_carry_the_two_columns(policy: str, electrolytic: float, others
 def test_src_tantalum_takes_the_stricter_figure_of_the_other_document(policy: str) -> None:
     tantalum = row(load_policy(policy), "solid-tantalum-voltage")
     assert tantalum.rule == Fraction(0.5)
-    assert "EEE-INST-002" in tantalum.document and tantalum.evidence == "own decision"
+    assert "EEE-INST-002" in tantalum.document
+    assert tantalum.evidence == "own decision"
 
 
 @pytest.mark.parametrize(
-    "name,fraction,below", [("as-rated", 1.0, 0.0), ("uniform-80", 0.8, 20.0), ("uniform-50", 0.5, 40.0)]
+    ("name", "fraction", "below"), [("as-rated", 1.0, 0.0), ("uniform-80", 0.8, 20.0), ("uniform-50", 0.5, 40.0)]
 )
-def test_uniform_policies_use_one_fraction_for_all_but_temperature(
-    name: str, fraction: float, below: float
-) -> None:
+def test_uniform_policies_use_one_fraction_for_all_but_temperature(name: str, fraction: float, below: float) -> None:
     policy = load_policy(name)
     for kind, quantity in (("capacitor", "voltage_peak"), ("drive", "power"), ("inductor", "flux_density")):
         assert [r.rule for r in policy.rows_for(kind, None, quantity)] == [Fraction(fraction)]
@@ -85,7 +84,8 @@ def test_load_policy_unknown_name_lists_the_known_and_the_nearest() -> None:
     with pytest.raises(InputError) as caught:
         load_policy("src-sever")
     (problem,) = caught.value.problems
-    assert problem.code == "unknown-name" and "src-severe" in problem.repair
+    assert problem.code == "unknown-name"
+    assert "src-severe" in problem.repair
     assert all(name in problem.expected for name in NAMES)
 
 
@@ -99,7 +99,8 @@ def test_load_policy_fill_from_shipped_policy_answers_for_its_gaps(tmp_path: Pat
     text = HEAD + 'fill_from = "uniform-50"\n' + ROW.replace('quantity = "any"', 'quantity = "power"')
     policy = load_policy(write(tmp_path, text))
     assert policy.rows_for("capacitor", None, "voltage_peak") == ()
-    assert policy.fill is not None and policy.fill.name == "uniform-50"
+    assert policy.fill is not None
+    assert policy.fill.name == "uniform-50"
 
 
 def test_load_policy_fill_from_policy_that_fills_itself_is_refused(tmp_path: Path) -> None:
@@ -113,7 +114,7 @@ def test_load_policy_missing_file_is_unreadable(tmp_path: Path) -> None:
 
 
 @pytest.mark.parametrize(
-    "content,code",
+    ("content", "code"),
     [
         (b"name = ", "not-toml"),
         (b"\xff\xfe", "file-unreadable"),
@@ -138,7 +139,7 @@ def test_load_policy_head_without_a_key_is_refused(key: str, tmp_path: Path) -> 
 
 
 @pytest.mark.parametrize(
-    "old,new,expected",
+    ("old", "new", "expected"),
     [
         ("allowed_fraction = 0.7", "allowed_fraction = 1.2", ("out-of-range", "row.all.allowed_fraction")),
         ("allowed_fraction = 0.7", "allowed_fraction = nan", ("out-of-range", "row.all.allowed_fraction")),
@@ -173,9 +174,7 @@ def test_load_policy_row_for_unknown_family_names_the_known_ones(tmp_path: Path)
 
 
 def test_load_policy_row_for_a_quantity_of_another_kind_is_refused(tmp_path: Path) -> None:
-    text = ROW.replace('kind = "any"', 'kind = "resistor"').replace(
-        'quantity = "any"', 'quantity = "slew_rate"'
-    )
+    text = ROW.replace('kind = "any"', 'kind = "resistor"').replace('quantity = "any"', 'quantity = "slew_rate"')
     assert problems(tmp_path, HEAD + text) == {("bad-rating-file", "row.all.quantity")}
 
 

@@ -106,9 +106,7 @@ curves = st.lists(st.tuples(st.floats(0.05, 3.0), st.floats(-6.0, 6.0)), min_siz
 
 
 @given(curves, st.floats(0.0, 1.0), st.floats(0.0, 1.0), st.integers(2, 40))
-def test_smallest_band_is_below_every_point_of_the_band(
-    curve: object, start: float, stop: float, count: int
-) -> None:
+def test_smallest_band_is_below_every_point_of_the_band(curve: object, start: float, stop: float, count: int) -> None:
     first, last = curve.hertz[0], curve.hertz[-1]  # type: ignore[attr-defined]
     low, high = sorted((first + start * (last - first), first + stop * (last - first)))
     least = curve.smallest(np.array([low]), np.array([high]))[0]  # type: ignore[attr-defined]
