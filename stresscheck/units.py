@@ -244,17 +244,17 @@ def render(value: float, unit: str, digits: int = 4, toward: str = "nearest") ->
     shown in degC.
     """
     if unit == "K":
-        return f"{_rounded(Decimal(value) - ZERO_CELSIUS, digits, toward)} degC"
+        return f"{_rounded(Decimal(repr(float(value))) - ZERO_CELSIUS, digits, toward)} degC"
     if value == 0.0 or not math.isfinite(value):
         return f"{value:g} {unit}".strip()
     if unit == "":
-        return _rounded(Decimal(value), digits, toward)
+        return _rounded(Decimal(repr(float(value))), digits, toward)
     exponent = math.floor(math.log10(abs(value)))
     power, prefix = next(((p, x) for p, x in _SHOWN if exponent >= p), _SHOWN[-1])
-    text = _rounded(Decimal(value).scaleb(-power), digits, toward)
+    text = _rounded(Decimal(repr(float(value))).scaleb(-power), digits, toward)
     if abs(Decimal(text)) >= 1000 and power < 9:
         power, prefix = next((p, x) for p, x in _SHOWN if p == power + 3)
-        text = _rounded(Decimal(value).scaleb(-power), digits, toward)
+        text = _rounded(Decimal(repr(float(value))).scaleb(-power), digits, toward)
     return f"{text} {prefix}{unit}"
 
 

@@ -53,9 +53,7 @@ def slow_discharge(facts: Facts, thresholds: Thresholds) -> list[Caution]:
 
 def _staying(facts: Facts, floor: float) -> list[CapacitorFact]:
     """The capacitors that stay charged, each in its worst state."""
-    return list(
-        worst_capacitors(facts, lambda fact: _kept(fact, floor) > 0.0, lambda fact: _kept(fact, floor))
-    )
+    return list(worst_capacitors(facts, lambda fact: _kept(fact, floor) > 0.0, lambda fact: _kept(fact, floor)))
 
 
 def _kept(fact: CapacitorFact, floor: float) -> float:

@@ -45,9 +45,7 @@ def cautions_for(facts: Facts, thresholds: Thresholds | None = None) -> tuple[Ca
     missing = sorted({name for hazard in HAZARDS for name in hazard.thresholds if name not in data})
     if missing:
         raise InputError(
-            Problem(
-                "bad-rating-file", "thresholds", None, f"threshold.{name}", "nothing", "a threshold", "add it"
-            )
+            Problem("bad-rating-file", "thresholds", None, f"threshold.{name}", "nothing", "a threshold", "add it")
             for name in missing
         )
     return tuple(caution for hazard in HAZARDS for caution in hazard.find(facts, data))

@@ -30,9 +30,7 @@ def worst_capacitors(
     return _worst(firing, lambda fact: fact.part, size)
 
 
-def _worst(
-    facts: Iterable[Fact], subject: Callable[[Fact], str], size: Callable[[Fact], float]
-) -> Iterator[Fact]:
+def _worst(facts: Iterable[Fact], subject: Callable[[Fact], str], size: Callable[[Fact], float]) -> Iterator[Fact]:
     largest: dict[str, Fact] = {}
     for fact in facts:
         held = largest.get(subject(fact))

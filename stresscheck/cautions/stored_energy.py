@@ -40,9 +40,7 @@ def _tier(volt: float, thresholds: Thresholds) -> Threshold:
 def _caution(fact: CapacitorFact, tier: Threshold, thresholds: Thresholds) -> Caution:
     older = thresholds["stored-energy-older-tier"]
     shock = fact.joule >= older.figure("energy") and fact.volt >= older.figure("voltage_from")
-    also = (
-        f" {older.shown('energy')} at {older.shown('voltage_from')} and more: risk of shock." if shock else ""
-    )
+    also = f" {older.shown('energy')} at {older.shown('voltage_from')} and more: risk of shock." if shock else ""
     text = (
         f"{shown(fact.joule, 'J')} in {fact.part} ({shown(fact.farad, 'F')} at {shown(fact.volt, 'V')} "
         f"peak, DC included) in state {fact.state}: stored energy.{reason(fact)} "

@@ -106,9 +106,7 @@ def load_thresholds(folder: Path | None = None) -> Thresholds:
         for name in file.subtables("threshold"):
             if name in found:
                 held = found[name].file
-                file.problem(
-                    "duplicate-name", ("threshold", name), name, "an id of its own", f"{held} has it"
-                )
+                file.problem("duplicate-name", ("threshold", name), name, "an id of its own", f"{held} has it")
                 continue
             found[name] = _read(file, name)
         file.finish({"title", "threshold"})
@@ -176,14 +174,10 @@ def _read_source(file: DataFile, at: tuple[str, ...], entry: Mapping[str, object
     for key in ("document", "edition", "clause", "evidence"):
         value = entry.get(key)
         if not isinstance(value, str) or not value.strip():
-            file.problem(
-                "missing-key", (*at, key), "nothing", "text: no figure without its source", f"add {key}"
-            )
+            file.problem("missing-key", (*at, key), "nothing", "text: no figure without its source", f"add {key}")
             value = ""
         texts[key] = value
     if texts["evidence"] and texts["evidence"] not in EVIDENCE:
         words = ", ".join(EVIDENCE)
-        file.problem(
-            "wrong-type", (*at, "evidence"), repr(texts["evidence"]), f"one of: {words}", "use its words"
-        )
+        file.problem("wrong-type", (*at, "evidence"), repr(texts["evidence"]), f"one of: {words}", "use its words")
     return Source(**texts, says=str(entry.get("says", "")))

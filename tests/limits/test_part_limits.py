@@ -178,6 +178,14 @@ def test_nasa_parallel_line_reaches_zero_at_t2() -> None:
         assert allowed(found)["dissipation"] == pytest.approx(expected, abs=1e-5)
 
 
+def test_nasa_parallel_line_on_a_rating_over_frequency_is_its_fraction() -> None:
+    curve = {"by": "frequency", "points": [["10 kHz", "10 W"], ["200 kHz", "5 W"]]}
+    (limit,) = ask("nasa-eee-inst-002", "resistor", resistor("film", dissipation=curve), "dissipation").limits
+    assert limit.allowed(np.array([1e4, 2e5])).tolist() == pytest.approx([6.0, 3.0])
+    assert limit.allowed_fraction == pytest.approx(0.6)
+    assert limit.steps(1e4)[1].numbers == "0.6 x 10 W"
+
+
 def test_nasa_chip_film_power_falls_to_zero_at_118_degc() -> None:
     """Full fraction to 70 degC, straight line to zero at 118 degC (section R1, table 4, transcription)."""
     part = resistor("chip film", dissipation="1 W")
