@@ -243,6 +243,8 @@ def _bound_use(worst: Worst, plan: _Plan, index: int, use: int, column: int) -> 
 def _method(network: Network, worst: Worst) -> str:
     if not any(axis.varies for axis in network.axes.items):
         return "nothing varies: the bound is the value itself"
+    if worst.too_many:
+        return "none: too many values vary at once for the corner rule"
     if worst.bounds.spent:
         return "corner rule over boxes, stopped by the budget before every gap was closed"
     return "corner rule over boxes, split until every gap was closed"

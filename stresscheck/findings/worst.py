@@ -25,6 +25,8 @@ ZERO = 1e-9
 """What counts as zero beside the largest stress of the same quantity: rounding leaves such noise in dead parts."""
 BATCH_CORNERS = 6144
 """Corners handled together: few enough for the cache, enough to pay for the calls."""
+MOST_NUMBERS = 4_000_000
+"""Numbers of all matrices of a block of points."""
 RIDGE_ROUNDS = 6
 PATTERN = 12
 """Scales of the steps tried on axes without a closed form, each a quarter of the one before."""
@@ -55,7 +57,8 @@ class Asked:
 class Worst:
     """Per asked function: nominal value, largest found and where, largest at corners alone, and the bound.
 
-    `noise`: values up to this are rounding of a stress that is zero.
+    `noise`: values up to this are rounding of a stress that is zero; `too_many`: so many values vary that no bound was
+    tried.
     """
 
     nominal: Floats
@@ -63,6 +66,7 @@ class Worst:
     corners: Floats
     bounds: Bounds
     noise: Floats
+    too_many: bool = False
 
 
 @dataclass(slots=True)
@@ -73,13 +77,21 @@ class Problem:
     notes: Mapping[str, PartNotes]
     asked: Sequence[Asked]
     box: Box = field(init=False)
+    too_many: bool = False
 
     def __post_init__(self) -> None:
         axes = self.network.axes
         self.box = Box(axes.low, axes.nominal, axes.high)
 
     def values(self, points: Floats) -> Floats:
-        """Every asked function at points, [points, functions]."""
+        """Every asked function at points, [points, functions]; in blocks that fit the memory."""
+        size = (len(self.network.nodes) + len(self.network.branches)) ** 2
+        block = max(256, MOST_NUMBERS // size)
+        if len(points) <= block:
+            return self._values(points)
+        return np.concatenate([self._values(points[i : i + block]) for i in range(0, len(points), block)])
+
+    def _values(self, points: Floats) -> Floats:
         sizes = sizes_at(self.network, points)
         found = stresses(self.network, self.notes, sizes)
         columns = []
@@ -95,6 +107,7 @@ class Problem:
         """Bound of the functions still asked for over boxes, and the axis to split each box on."""
         need = needs_of(self.network, [a for a, s in zip(self.asked, still, strict=True) if s])
         sizes, lines = sizes_over(self.network, lows, highs, need)
+        self.too_many = all(line.none_tried for line in lines)
         found = stresses(self.network, self.notes, sizes)
         bound = np.full((len(lows), len(self.asked)), np.inf)
         for column, ask in enumerate(self.asked):
@@ -197,16 +210,18 @@ class Problem:
         return np.asarray(np.clip(np.concatenate(out), self.box.low, self.box.high))
 
 
-def _find(problem: Problem) -> Peaks:
+def _find(problem: Problem, stop: Callable[[], bool]) -> Peaks:
     """Climb from all starts, then along ridges as long as that gains."""
-    peaks = climb(problem.box, problem.values, problem.candidates, problem.starts())
+    peaks = climb(problem.box, problem.values, problem.candidates, problem.starts(), stop)
     tunable = problem.tunable()
     for _ in range(RIDGE_ROUNDS):
+        if stop():
+            break
         better = along_ridges(problem.box, problem.values, problem.retuned, tunable, peaks)
         if not gained(peaks, better):
             break
         starts = np.unique(better.point[better.value > peaks.value], axis=0)
-        peaks = merge(better, climb(problem.box, problem.values, problem.candidates, starts))
+        peaks = merge(better, climb(problem.box, problem.values, problem.candidates, starts, stop))
     return peaks
 
 
@@ -218,7 +233,7 @@ def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool
     """
     nominal = problem.values(problem.box.nominal[None])[0]
     corners = _largest(problem.values(corner_points(problem.box)))
-    peaks = _find(problem)
+    peaks = _find(problem, lambda: stop(False))
     if not problem.box.varying:
         peaks = Peaks(nominal, np.repeat(problem.box.nominal[None], len(nominal), axis=0))
         return Worst(nominal, peaks, corners, Bounds(nominal.copy(), 1, False), _floor(problem, nominal))
@@ -243,9 +258,11 @@ def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool
         return np.where(wanted, improve(points), np.nan)
 
     found = np.where(wanted, peaks.value, np.nan)
-    bounds = prove(problem.box, problem.bounds, known, found, goal, _batch(problem), stop)
+    bounds = prove(
+        problem.box, problem.bounds, known, found, goal, _batch(problem), lambda d: problem.too_many or stop(d)
+    )
     bounds = Bounds(bounds.bound + floor, bounds.boxes, bounds.spent)
-    return Worst(nominal, state["peaks"], corners, bounds, floor)
+    return Worst(nominal, state["peaks"], corners, bounds, floor, problem.too_many)
 
 
 def _largest(values: Floats) -> Floats:

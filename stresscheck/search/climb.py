@@ -35,8 +35,14 @@ class Peaks:
     point: Floats
 
 
-def climb(box: Box, evaluate: Evaluate, candidates: Candidates, starts: Floats) -> Peaks:
-    """Largest value of every function, climbing from the best starts of each.
+def climb(
+    box: Box,
+    evaluate: Evaluate,
+    candidates: Candidates,
+    starts: Floats,
+    stop: Callable[[], bool] = lambda: False,
+) -> Peaks:
+    """Largest value of every function, climbing from the best starts of each; `stop()` ends it where it stands.
 
     Never below the best start. A start whose values are all NaN is passed over; where a function is NaN at every
     start its value is NaN.
@@ -49,6 +55,8 @@ def climb(box: Box, evaluate: Evaluate, candidates: Candidates, starts: Floats) 
     for sweep in range(SWEEPS):
         before, left = height.copy(), points
         for axis in box.varying:
+            if stop():
+                return _collect(points, height, target, values.shape[1])
             points, height = _move(box, evaluate, candidates, points, target, height, axis)
         points, height = _stride(box, evaluate, left, points, target, height)
         gain = height - before

@@ -21,12 +21,16 @@ ridge, [points, tries], NaN where there is none."""
 SCALES = 10
 """Step sizes tried: the width of the axis and halves of it."""
 LEAST_GAIN = 1e-7
+MOST_STEPS = 30_000
+"""Steps tried in all; where more are possible, fewer axes are retuned."""
 
 
 def along_ridges(box: Box, evaluate: Evaluate, retune: Retune, tunable: tuple[int, ...], peaks: Peaks) -> Peaks:
     """Better peaks by moving one axis and retuning another; the same peaks where nothing is gained."""
     target = np.flatnonzero(np.isfinite(peaks.value))
     starts = peaks.point[target]
+    steps = len(starts) * len(box.varying) * 2 * SCALES
+    tunable = tunable[: max(1, MOST_STEPS // max(1, steps))]
     trials = [
         _steps(box, retune, starts, target, moved, tuned)
         for moved in box.varying
