@@ -226,7 +226,7 @@ def _finding(
         working=steps_for(network, check, point, stress) + (() if limit is None else limit.steps(hertz)),
         rating_source="" if limit is None else limit.rating_source,
         derating_source="" if limit is None else limit.derating_source,
-        why=result.why, proof=proof, reason="" if dead else reason_for(network, check, point),
+        why=result.why, ratio_bound=bound_use, proof=proof, reason="" if dead else reason_for(network, check, point),
     )  # fmt: skip
 
 

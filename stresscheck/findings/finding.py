@@ -69,6 +69,8 @@ class Finding:
     """What carries the stress, in words: "gain 18.2 x drive 12 V at resonance 85.1 kHz"; empty where it is plain."""
     accepted: bool = False
     remarks: tuple[str, ...] = field(default=())
+    ratio_bound: float | None = None
+    """Proved bound of stress over allowed value, where one was proved: what `within` rests on."""
 
     def __post_init__(self) -> None:
         if self.verdict not in VERDICTS:
