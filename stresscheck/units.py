@@ -68,7 +68,7 @@ _KELVIN: Dimension = (0, 0, 0, 0, 1)
 _EXACT = Context(prec=60)
 
 
-class UnitProblem(ValueError):
+class UnitError(ValueError):
     """A text that isn't a quantity: problem code, what was expected, and how to repair it."""
 
     def __init__(self, code: str, expected: str, repair: str) -> None:
@@ -93,7 +93,7 @@ class Wanted:
 
 
 def parse(text: str, wanted: Wanted) -> float:
-    """SI value of a quantity. Raises UnitProblem; never evaluates anything, whatever the text.
+    """SI value of a quantity. Raises UnitError; never evaluates anything, whatever the text.
 
     At most 48 characters, one number in ASCII digits, one unit. Temperatures in degC become K.
     """
@@ -104,12 +104,22 @@ def parse(text: str, wanted: Wanted) -> float:
     else:
         factor, dimension = _factor(unit, expected, bare=not unit, number=number, wanted=wanted)
         if dimension != dimension_of(wanted.unit):
-            raise UnitProblem("wrong-dimension", expected, f"write it in {wanted.unit} or with a prefix")
+            raise UnitError("wrong-dimension", expected, f"write it in {wanted.unit} or with a prefix")
         value = float(_EXACT.multiply(Decimal(number), factor))
     if not (wanted.low <= value <= wanted.high):
-        limits = f"{render(wanted.low, wanted.unit)} to {render(wanted.high, wanted.unit)}"
-        raise UnitProblem("out-of-range", f"{wanted.what} of {limits}", "check prefix and sign of the figure")
+        limits = f"{_bound(wanted.low, wanted.unit)} to {_bound(wanted.high, wanted.unit)}"
+        raise UnitError("out-of-range", f"{wanted.what} from {limits}", "check sign and prefix of the figure")
     return value
+
+
+def _bound(value: float, unit: str) -> str:
+    """A bound of plausibility as a text that the field would take: "1 GV", "-50 %"."""
+    if unit == "K":
+        return f"{value:g} K"
+    if value == 0.0 or not math.isfinite(value):
+        return f"{value:g} {unit}".strip()
+    number, _, rest = render(value, unit).partition(" ")
+    return f"{float(number):g} {rest}".strip()
 
 
 def dimension_of(unit: str) -> Dimension:
@@ -125,33 +135,42 @@ def factor_of(unit: str) -> float:
 def _split(text: str, expected: str) -> tuple[str, str]:
     """Number and folded unit text."""
     if len(text) > LONGEST:
-        raise UnitProblem("bad-quantity", expected, f"at most {LONGEST} characters")
+        raise UnitError("bad-quantity", expected, f"at most {LONGEST} characters")
     folded = _OHM.sub("ohm", text.strip(" ").translate(_FOLD))
     match = _NUMBER.match(folded)
     if match is None:
-        raise UnitProblem("bad-quantity", expected, "write one number and one unit")
+        raise UnitError("bad-quantity", expected, "write one number and one unit")
     number, rest = match.group(), folded[match.end() :]
     if rest.startswith(" "):
         rest = rest[1:]
     if "," in rest or not (rest == "" or rest == "\u00b0C" or _UNIT.fullmatch(rest)):
         hint = "use a point as decimal mark" if "," in text else "write one number and one unit"
-        raise UnitProblem("bad-quantity", expected, hint)
+        raise UnitError("bad-quantity", expected, hint)
     return number, rest
 
 
-def _factor(
-    unit: str, expected: str, *, bare: bool, number: str, wanted: Wanted
-) -> tuple[Decimal, Dimension]:
+def _factor(unit: str, expected: str, *, bare: bool, number: str, wanted: Wanted) -> tuple[Decimal, Dimension]:
     if bare:
         if dimension_of(wanted.unit) == NONE:
             return Decimal(1), NONE
-        raise UnitProblem("bad-quantity", expected, f'give the unit, for instance "{number} {wanted.unit}"')
+        raise UnitError("bad-quantity", expected, f'give the unit, for instance "{number} {wanted.unit}"')
     try:
         return _unit_factor(unit)
     except KeyError:
-        near = _near_case(unit)
-        repair = f"did you mean {near}?" if near else f"write it in {wanted.unit} or with a prefix"
-        raise UnitProblem("unknown-unit", expected, repair) from None
+        raise UnitError("unknown-unit", expected, _repair(number, unit, wanted)) from None
+
+
+def _repair(number: str, unit: str, wanted: Wanted) -> str:
+    """What to write instead of an unknown unit; first of all the known spelling of the field's own dimension."""
+    near = _near_case(unit)
+    fitting = [known for known in near if TABLE[known][1] == dimension_of(wanted.unit)] or near
+    if fitting:
+        return "did you mean " + " or ".join(f'"{number} {known}"' for known in fitting) + "?"
+    if "degC" in unit:
+        return "write differences of temperature in K" if not wanted.absolute else "write degC alone, or K"
+    if re.search(r"\b(rpm|rps|rad)\b", unit):
+        return "write it in Hz, cycles a second: radians and turns hide a factor of 2 pi"
+    return f"write it in {wanted.unit} or with a prefix"
 
 
 @lru_cache(maxsize=512)
@@ -194,33 +213,29 @@ def _ask_pint(name: str) -> tuple[Decimal, Dimension]:
         raise KeyError(name)
     try:
         units = registry()
-        one = units.Quantity(1.0, units.parse_units(name))
-        two = units.Quantity(2.0, units.parse_units(name)).to_base_units()
-        base = one.to_base_units()
-    except Exception:
+        atom = units.parse_units(name)
+        base = units.Quantity(1.0, atom).to_base_units()
+        two = units.Quantity(2.0, atom).to_base_units()
+        exponents = {str(unit): float(str(power)) for unit, power in base.unit_items()}
+        value, double = float(base.magnitude), float(two.magnitude)
+    except Exception:  # pint raises errors of many kinds for texts that it can't read
         raise KeyError(name) from None
-    kinds = {"[length]": 0, "[mass]": 1, "[time]": 2, "[current]": 3, "[temperature]": 4}
-    exponents = [0, 0, 0, 0, 0]
-    for kind, power in dict(base.dimensionality).items():
-        if kind not in kinds or power != int(power):
-            raise KeyError(name)
-        exponents[kinds[kind]] = int(power)
-    if not any(exponents):
-        raise KeyError(name)  # angles and counts would slip a factor of 2 pi past the check of dimensions
-    value = float(base.magnitude)
-    if not math.isfinite(value) or value == 0.0 or abs(two.magnitude - 2.0 * value) > 1e-9 * abs(value):
+    if not exponents or not set(exponents) <= set(_PINT_BASE):
+        raise KeyError(name)  # radians, turns, bits and counts would slip a factor past the check of dimensions
+    if any(power != int(power) for power in exponents.values()):
         raise KeyError(name)
-    dimension = (exponents[0], exponents[1], exponents[2], exponents[3], exponents[4])
-    gram = Decimal("1e-3") ** exponents[1] if "gram" in str(base.units) and "kilogram" not in str(base.units) else 1
-    return Decimal(repr(value)) * gram, dimension
+    if not math.isfinite(value) or value == 0.0 or abs(double - 2.0 * value) > 1e-9 * abs(value):
+        raise KeyError(name)  # offsets and logarithms: no factor says what such a unit means
+    m, kg, s, a, k = (int(exponents.get(unit, 0.0)) for unit in _PINT_BASE)
+    return Decimal(f"{value:.15g}"), (m, kg, s, a, k)  # 15 digits: pint's float factors end in noise (ft, oz)
 
 
-def _near_case(unit: str) -> str:
-    """The known spelling that differs from this one in case only."""
-    for known in TABLE:
-        if known.lower() == unit.lower() and known != unit:
-            return known
-    return ""
+_PINT_BASE = ("meter", "kilogram", "second", "ampere", "kelvin")
+
+
+def _near_case(unit: str) -> list[str]:
+    """The known spellings that differ from this one in case only: mhz is mHz or MHz."""
+    return [known for known in TABLE if known.lower() == unit.lower() and known != unit]
 
 
 def to_pint(value: float, unit: str) -> pint.Quantity[Any]:
@@ -238,30 +253,50 @@ _ROUND = {"nearest": ROUND_HALF_EVEN, "up": ROUND_CEILING, "down": ROUND_FLOOR}
 
 
 def render(value: float, unit: str, digits: int = 4, toward: str = "nearest") -> str:
-    """A figure with a fitting prefix, `digits` significant: "412.7 V", "3.420 nF".
+    """An SI figure in `unit` with a fitting prefix, `digits` significant: "412.7 V", "3.420 nF", "5.000 %".
 
-    toward: "up" and "down" round to that side always, so that 1.0001 never reads as 1.000. Temperatures in K are
-    shown in degC.
+    toward: "up" (to plus infinity) and "down" round to that side always, so that 1.0001 never reads as 1.000.
+    Temperatures in K are shown in degC. Units that take no prefix (m^2, ppm/K, kg) are shown without one.
     """
     if unit == "K":
-        return f"{_rounded(Decimal(repr(float(value))) - ZERO_CELSIUS, digits, toward)} degC"
+        return f"{_rounded(_decimal(value) - ZERO_CELSIUS, digits, toward)} degC"
     if value == 0.0 or not math.isfinite(value):
         return f"{value:g} {unit}".strip()
-    if unit == "":
-        return _rounded(Decimal(repr(float(value))), digits, toward)
-    exponent = math.floor(math.log10(abs(value)))
-    power, prefix = next(((p, x) for p, x in _SHOWN if exponent >= p), _SHOWN[-1])
-    text = _rounded(Decimal(repr(float(value))).scaleb(-power), digits, toward)
-    if abs(Decimal(text)) >= 1000 and power < 9:
-        power, prefix = next((p, x) for p, x in _SHOWN if p == power + 3)
-        text = _rounded(Decimal(repr(float(value))).scaleb(-power), digits, toward)
+    exact = _EXACT.divide(_decimal(value), _unit_factor(unit)[0] if unit else Decimal(1))
+    if not _takes_prefix(unit):
+        return f"{_rounded(exact, digits, toward)} {unit}".strip()
+    power, prefix = _fitting(exact)
+    text = _rounded(exact.scaleb(-power), digits, toward)
+    if abs(Decimal(text)) >= 1000 and power < _SHOWN[0][0]:
+        power, prefix = _fitting(Decimal(text).scaleb(power))
+        text = _rounded(exact.scaleb(-power), digits, toward)
     return f"{text} {prefix}{unit}"
+
+
+def _decimal(value: float) -> Decimal:
+    """Shortest decimal that reads back as this float."""
+    return Decimal(repr(float(value)))
+
+
+def _fitting(exact: Decimal) -> tuple[int, str]:
+    """Power of ten and prefix that leave one to three digits before the point."""
+    return next(((power, prefix) for power, prefix in _SHOWN if exact.adjusted() >= power), _SHOWN[-1])
+
+
+@lru_cache(maxsize=128)
+def _takes_prefix(unit: str) -> bool:
+    """True where a prefix before the text multiplies the unit: V, V/s, K/W; not %, kg, m^2."""
+    first = re.split(r"[*/^]", unit)[0]
+    return f"{first}^" not in unit and ("k" + first in TABLE or first in ("F", "H", "C", "T", "S", "s", "K"))
 
 
 def _rounded(value: Decimal, digits: int, toward: str) -> str:
     """Plain decimal text with so many significant digits."""
     if value == 0:
         return "0"
+    if not -7 <= value.adjusted() <= 14:
+        rounded = Context(prec=digits, rounding=_ROUND[toward]).create_decimal(value)
+        return f"{rounded:.{digits - 1}e}".replace("e+", "e")
     place = value.adjusted() - digits + 1
     rounded = value.quantize(Decimal(1).scaleb(place), rounding=_ROUND[toward], context=_EXACT)
     if rounded.adjusted() > value.adjusted():

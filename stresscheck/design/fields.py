@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from itertools import pairwise
 from typing import Annotated, Any
 
 from pydantic import PlainValidator, WithJsonSchema
 from pydantic_core import PydanticCustomError
 
 from stresscheck.design.quantity import Curve, Quantity, Tolerance
-from stresscheck.units import UnitProblem, Wanted, parse
+from stresscheck.units import UnitError, Wanted, parse
 
 Reader = Callable[[Any], Any]
 
@@ -57,7 +58,7 @@ def read_quantity(raw: Any, wanted: Wanted) -> Quantity:
         raise fail("wrong-type", expected, "write it as text in quotation marks")
     try:
         return Quantity(parse(raw, wanted), raw)
-    except UnitProblem as problem:
+    except UnitError as problem:
         raise fail(problem.code, problem.expected, problem.repair) from None
 
 
@@ -68,7 +69,7 @@ def read_number(raw: Any, low: float, high: float, what: str) -> Quantity:
         wanted = Wanted(what, "", low, high, f"{max(low, 0.001):g}")
         try:
             return Quantity(parse(raw, wanted), raw)
-        except UnitProblem as problem:
+        except UnitError as problem:
             raise fail(problem.code, expected, problem.repair) from None
     if isinstance(raw, bool) or not isinstance(raw, (int, float)):
         raise fail("wrong-type", expected, "write a number without quotation marks")
@@ -141,7 +142,7 @@ def read_curve(raw: Any, read: Reader, axes: tuple[str, ...]) -> Curve:
         raise fail("wrong-type", "at least two points, each a list of two", f"write {shape}")
     x = WANTED["hertz" if raw["by"] == "frequency" else "kelvin"]
     found = tuple((read_quantity(a, x), read(b)) for a, b in points)
-    if any(not (one[0] < two[0]) for one, two in zip(found, found[1:], strict=False)):
+    if any(not (one[0] < two[0]) for one, two in pairwise(found)):
         raise fail("out-of-range", f"points in order of increasing {raw['by']}", "sort the points, each once")
     return Curve(raw["by"], found)
 
@@ -185,7 +186,7 @@ def tolerance(name: str | None) -> Any:
         if isinstance(raw, str) and name is not None:
             try:
                 return parse(raw, share), False
-            except UnitProblem:
+            except UnitError:
                 whole = WANTED[name]
                 absolute = Wanted("a tolerance", whole.unit, -whole.high, whole.high, "5 %")
                 return float(read_quantity(raw, absolute)), True
@@ -308,5 +309,3 @@ def read_name(raw: Any) -> str:
 def is_name(text: str) -> bool:
     """True for a name that every report can print."""
     return 0 < len(text) <= 40 and text.isascii() and all(c.isalnum() or c in "-_" for c in text)
-
-

@@ -78,7 +78,9 @@ def _toml(text: str, file: str) -> dict[str, Any]:
             [Problem("not-toml", file, line, "", words.split(" (at")[0], "valid TOML 1.0", "correct the line")]
         ) from None
     except (RecursionError, ValueError):
-        raise InputError([_unreadable(file, "numbers or nesting beyond reason", "a design file", "shorten it")]) from None
+        raise InputError(
+            [_unreadable(file, "numbers or nesting beyond reason", "a design file", "shorten it")]
+        ) from None
 
 
 def _line_of(words: str) -> int | None:
@@ -161,7 +163,13 @@ class _Loader:
             return with_part(kind, part, self.folder)
         except KeyError as error:
             known = str(error.args[0])
-            self.say("unknown-name", (kind, name, "part"), show(part["part"]), f"a {kind}: {known}", "see the library command")
+            self.say(
+                "unknown-name",
+                (kind, name, "part"),
+                show(part["part"]),
+                f"a {kind}: {known}",
+                "see the library command",
+            )
         except InputError as error:
             self.problems.extend(error.problems)
         return {key: value for key, value in part.items() if key != "part"}
@@ -199,10 +207,14 @@ class _Loader:
             there = Design.model_validate(raw)
         except ValidationError as error:
             for problem in as_problems(error.errors(), raw, Design, self.file, lambda path: None):
-                self.say(problem.code, ("state", name, "change", problem.key), problem.found, problem.expected, problem.repair)
+                self.say(
+                    problem.code,
+                    ("state", name, "change", problem.key),
+                    problem.found,
+                    problem.expected,
+                    problem.repair,
+                )
             return None
         for code, path, found, expected, repair in coupling_problems(there):
             self.say(code, ("state", name, "change", ".".join(path)), found, expected, repair)
         return there
-
-

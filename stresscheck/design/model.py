@@ -134,7 +134,8 @@ class _Level(Quantity):
         signed = "signed_" if key == "offset" else ""
         unit, name = ("A", "ampere") if isinstance(raw, str) and raw.rstrip().endswith("A") else ("V", "volt")
         read = f.read_quantity(raw, f.WANTED[signed + name])
-        made = super().__new__(cls, float(read), read.text)
+        made = Quantity.__new__(cls, float(read), read.text)
+        assert isinstance(made, _Level)
         object.__setattr__(made, "unit", unit)
         return made
 
@@ -146,9 +147,7 @@ def _check_harmonics(raw: Any) -> None:
     if not isinstance(raw, list) or not raw:
         raise f.fail("wrong-type", shape, "write a list of lists")
     for item in raw:
-        numbers = isinstance(item, list) and all(
-            isinstance(x, (int, float)) and not isinstance(x, bool) for x in item
-        )
+        numbers = isinstance(item, list) and all(isinstance(x, (int, float)) and not isinstance(x, bool) for x in item)
         if not numbers or len(item) != 3 or not isinstance(item[0], int) or item[0] < 1 or not 0 <= item[1] <= 1e3:
             raise f.fail("wrong-type", shape, "order is a whole number from 1, size is not negative")
 

@@ -247,5 +247,3 @@ def _either(table: Table, one: str, other: str) -> None:
     """Not both of these keys."""
     if getattr(table, one) is not None and getattr(table, other) is not None:
         raise f.fail("conflicting-keys", f"either {one} or {other}", "remove one of the two")
-
-

@@ -34,9 +34,7 @@ def as_problems(
     return sorted(found, key=lambda problem: (problem.line or 0, problem.key))
 
 
-def _problem(
-    error: Any, raw: Mapping[str, Any], model: type[BaseModel], file: str, line: Place
-) -> Problem:
+def _problem(error: Any, raw: Mapping[str, Any], model: type[BaseModel], file: str, line: Place) -> Problem:
     path = tuple(str(part) for part in error["loc"])
     kind = error["type"]
     if kind == "extra_forbidden":
@@ -54,7 +52,13 @@ def _problem(
         )
     expected = _EXPECTED.get(kind, "another kind of value")
     return Problem(
-        "wrong-type", file, line(path), ".".join(path), show(value_at(raw, path)), expected, "see the design file's format"
+        "wrong-type",
+        file,
+        line(path),
+        ".".join(path),
+        show(value_at(raw, path)),
+        expected,
+        "see the design file's format",
     )
 
 
@@ -63,7 +67,13 @@ def _unknown_key(path: tuple[str, ...], model: type[BaseModel], file: str, line:
     near = nearest(path[-1], known)
     repair = f"did you mean {near}?" if near else "remove it"
     return Problem(
-        "unknown-key", file, line(path), ".".join(path), f"the key {show(path[-1])}", "one of " + ", ".join(known), repair
+        "unknown-key",
+        file,
+        line(path),
+        ".".join(path),
+        f"the key {show(path[-1])}",
+        "one of " + ", ".join(known),
+        repair,
     )
 
 

@@ -76,9 +76,7 @@ def _unknown(design: Design, parts: list[str], path: str) -> PROBLEM | None:
     return None
 
 
-def _open_or_short(
-    parts: list[str], path: str, value: Any, opened: set[str], shorted: set[str]
-) -> list[PROBLEM]:
+def _open_or_short(parts: list[str], path: str, value: Any, opened: set[str], shorted: set[str]) -> list[PROBLEM]:
     allowed = ("open", "short") if parts[0] in JOINABLE else ("open",)
     if value not in allowed:
         words = " or ".join(f'"{word}"' for word in allowed)

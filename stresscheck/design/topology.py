@@ -20,7 +20,9 @@ def topology_problems(design: Design) -> list[PROBLEM]:
     if not design.drive:
         problems.append(("bad-topology", (), "no drive", "at least one [drive.NAME]", "add the drive"))
     if not (design.capacitor or design.inductor or design.resistor):
-        problems.append(("bad-topology", (), "no part", "at least one capacitor, inductor or resistor", "add the parts"))
+        problems.append(
+            ("bad-topology", (), "no part", "at least one capacitor, inductor or resistor", "add the parts")
+        )
     if problems:
         return problems
     uses = _uses(design)
@@ -68,7 +70,9 @@ def _lonely_nodes(uses: dict[str, list[tuple[str, str]]]) -> list[PROBLEM]:
             continue
         near = nearest(node, [other for other in uses if other != node])
         repair = f"did you mean {near}?" if near else "connect a second part, or remove this one"
-        problems.append(("bad-topology", (*parts[0], "between"), f"the node {node} used once", "two parts at every node", repair))
+        problems.append(
+            ("bad-topology", (*parts[0], "between"), f"the node {node} used once", "two parts at every node", repair)
+        )
     return problems
 
 
@@ -168,7 +172,9 @@ def coupling_problems(design: Design) -> list[PROBLEM]:
                 problems.append(("unknown-name", path, show(coil), "an inductor of this design", repair))
         pair = frozenset(part.of)
         if pair in pairs:
-            problems.append(("bad-coupling", path, f"the coils of {pairs[pair]} again", "one coupling a pair", "remove one"))
+            problems.append(
+                ("bad-coupling", path, f"the coils of {pairs[pair]} again", "one coupling a pair", "remove one")
+            )
         pairs[pair] = name
     if not problems and design.coupling and not _positive(_factors(design)):
         worst = max(design.coupling, key=lambda n: abs(design.coupling[n].span().high))

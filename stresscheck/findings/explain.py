@@ -23,6 +23,8 @@ def reason_for(network: Network, check: Check, point: Floats) -> str:
     """Gain times drive where a resonance carries the stress; empty where it is plain."""
     seen, drive = _single_drive(network, point)
     place = network.branch_of(check.part)
+    if place is None:
+        place = network.branch_of(check.part, "source")
     if seen is None or place is None or drive <= 0.0:
         return ""
     hertz = float(seen.omega[0] / TAU)

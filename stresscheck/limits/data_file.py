@@ -12,7 +12,7 @@ from typing import Any
 
 from stresscheck.design.positions import key_lines
 from stresscheck.errors import InputError, Problem
-from stresscheck.units import UnitProblem, Wanted, parse
+from stresscheck.units import UnitError, Wanted, parse
 
 EVIDENCE = MappingProxyType(
     {
@@ -169,7 +169,7 @@ class DataFile:
             return None
         try:
             return parse(value, wanted)
-        except UnitProblem as fault:
+        except UnitError as fault:
             self.problem(fault.code, path, repr(value), fault.expected, fault.repair)
             return None
 

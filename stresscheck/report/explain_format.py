@@ -58,7 +58,8 @@ def _proof(out: Lines, finding: Finding) -> None:
     else:
         gap = "" if proof.gap is None else f", {100 * proof.gap:.3g} % above the worst found"
         out.add(
-            f"{proof.boxes} boxes examined; no point of the box exceeds {finding.bound:.7g} {finding.unit}{gap}", indent=2
+            f"{proof.boxes} boxes examined; no point of the box exceeds {finding.bound:.7g} {finding.unit}{gap}",
+            indent=2,
         )
     if finding.ratio_bound is not None:
         out.add(f"that is at most {figures.percent(finding.ratio_bound)} of the allowed value", indent=2)

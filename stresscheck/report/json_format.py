@@ -48,7 +48,7 @@ def _finding(finding: Finding) -> dict[str, Any]:
     at = None
     if finding.at is not None:
         at = {"hertz": finding.at.hertz, "values": dict(finding.at.values)}
-    return _finite(
+    data: dict[str, Any] = _finite(
         {
             "id": finding.id,
             "state": finding.state,
@@ -78,6 +78,7 @@ def _finding(finding: Finding) -> dict[str, Any]:
             "accepted": finding.accepted,
         }
     )
+    return data
 
 
 def _finite(data: Any) -> Any:

@@ -83,7 +83,12 @@ def _step(finding: Finding, index: int) -> str:
 
 
 def _circuit(review: Review) -> list[str]:
-    out = ["## Resonances", "", _row(["state", "frequency", "Q", "bandwidth", "ring time", "energy"]), _row(["---"] * 6)]
+    out = [
+        "## Resonances",
+        "",
+        _row(["state", "frequency", "Q", "bandwidth", "ring time", "energy"]),
+        _row(["---"] * 6),
+    ]
     for r in review.resonances:
         energy = ", ".join(f"{text(part)} {100 * share:.0f} %" for part, share in r.energy)
         q = "no loss" if r.q is None else f"{r.q:.4g}"
@@ -91,8 +96,9 @@ def _circuit(review: Review) -> list[str]:
             text(r.state), figures.plain(r.hertz, "Hz"), q, figures.plain(r.bandwidth_hertz, "Hz"),
             figures.plain(r.ring_time_s, "s"), energy,
         ]))  # fmt: skip
-    out += ["", "## Drives", "", _row(["state", "drive", "frequency", "voltage peak", "current peak", "real", "reactive",
-                                       "apparent", "phase of current", "side"]), _row(["---"] * 10)]  # fmt: skip
+    columns = ["state", "drive", "frequency", "voltage peak", "current peak"]
+    columns += ["real", "reactive", "apparent", "phase of current", "side"]
+    out += ["", "## Drives", "", _row(columns), _row(["---"] * len(columns))]
     for d in review.drives:
         out.append(_row([
             text(d.state), text(d.drive), figures.plain(d.hertz, "Hz"), figures.plain(d.volt_peak, "V"),
@@ -104,7 +110,10 @@ def _circuit(review: Review) -> list[str]:
 
 def _cautions(review: Review) -> list[str]:
     out = ["## Cautions", ""]
-    out += [f"- **{text(c.id)}**: {text(c.text)} (source: {text(c.source)}; evidence: {c.evidence})" for c in review.cautions]
+    out += [
+        f"- **{text(c.id)}**: {text(c.text)} (source: {text(c.source)}; evidence: {c.evidence})"
+        for c in review.cautions
+    ]
     return [*out, "" if review.cautions else "None was triggered by the data entered.", ""]
 
 
@@ -117,7 +126,14 @@ def _notes(review: Review) -> list[str]:
             f"- {text(item.finding)} accepted by {text(item.by)} until {item.until}: {text(item.reason)} ({counts})"
         )
     d = review.derating
-    out += ["", "## Sources", "", f"- derating: {text(d.title)}, {text(d.edition)} ({text(d.evidence)}); {text(d.source)}"]
+    out += [
+        "",
+        "## Sources",
+        "",
+        f"- derating: {text(d.title)}, {text(d.edition)} ({text(d.evidence)}); {text(d.source)}",
+    ]
     out += [f"- {text(line)}" for line in dict.fromkeys(f.rating_source for f in review.findings if f.rating_source)]
-    out += [f"- {text(line)}" for line in dict.fromkeys(f.derating_source for f in review.findings if f.derating_source)]
+    out += [
+        f"- {text(line)}" for line in dict.fromkeys(f.derating_source for f in review.findings if f.derating_source)
+    ]
     return out

@@ -180,7 +180,11 @@ def _circuit(out: Lines, review: Review) -> None:
         out.add("drives, every value nominal", tone="open")
     for d in review.drives:
         lag = abs(d.phase_degrees)
-        side = "in phase" if d.side == "in phase" else f"current {'lags' if d.side == 'inductive' else 'leads'} {lag:.1f} deg"
+        side = (
+            "in phase"
+            if d.side == "in phase"
+            else f"current {'lags' if d.side == 'inductive' else 'leads'} {lag:.1f} deg"
+        )
         out.add(
             f"{d.state}: {d.drive} at {figures.plain(d.hertz, 'Hz')} gives {figures.plain(d.volt_peak, 'V')} peak, "
             f"{figures.plain(d.ampere_peak, 'A')} peak; {figures.plain(d.real_watt, 'W')} real, "

@@ -78,7 +78,9 @@ def many(count: int, evolution: bool) -> None:
         short = (best > result.peaks.value * (1 + 1e-6)) & (best > result.noise)
         missed += int(short.sum())
         if short.any():
-            print(f"    box {seed} ({shape}, Q {q:.0f}): {(best[short] / result.peaks.value[short]).max():.8f} of found")
+            print(
+                f"    box {seed} ({shape}, Q {q:.0f}): {(best[short] / result.peaks.value[short]).max():.8f} of found"
+            )
     print(f"  {count} boxes: closed whole {100 * closed / count:.1f} %, findings {100 * np.mean(functions):.1f} %")
     print(f"  points above a bound: {above}; functions where something larger was found: {missed}")
     print(f"  seconds a box: median {np.median(times):.3f}, 90 % {np.percentile(times, 90):.2f}, most {max(times):.1f}")
@@ -92,6 +94,7 @@ def _evolve(problem: Problem, result) -> np.ndarray:
     axes = problem.box.varying
     gap = result.bounds.bound / np.maximum(result.peaks.value, 1e-300)
     for function in np.argsort(-np.where(result.peaks.value > result.noise, gap, 0.0))[:3]:
+
         def objective(x: np.ndarray, function: int = int(function)) -> np.ndarray:
             points = np.repeat(problem.box.nominal[None], x.shape[1], axis=0)
             points[:, axes] = x.T
@@ -113,7 +116,8 @@ def against_evolution() -> None:
         start = time.perf_counter()
         _evolve(problem, result)
         one = (time.perf_counter() - start) / 3
-        print(f"  {shape:8}: all {len(problem.asked)} functions found and proved over one evolution: {seconds / one:.3f}")
+        ratio = seconds / one
+        print(f"  {shape:8}: all {len(problem.asked)} functions found and proved over one evolution: {ratio:.3f}")
 
 
 def main() -> None:

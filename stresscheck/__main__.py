@@ -1,0 +1,6 @@
+"""`python -m stresscheck`."""
+
+from stresscheck.cli import run
+
+if __name__ == "__main__":
+    run()

@@ -1,0 +1,51 @@
+"""`stresscheck library`."""
+
+from __future__ import annotations
+
+from typing import Annotated
+
+import typer
+
+SHELVES = ("policies", "parts", "thresholds", "families")
+
+
+def library(
+    shelf: Annotated[
+        str | None, typer.Argument(metavar="[SHELF]", help="policies, parts, thresholds or families.")
+    ] = None,
+    name: Annotated[str | None, typer.Argument(metavar="[NAME]", help="One entry, with all its figures.")] = None,
+) -> None:
+    """Show what ships with the program: derating policies, demonstration parts, thresholds of cautions, families.
+
+    Every figure names its document, edition, clause and evidence. Examples:
+
+      stresscheck library policies
+
+      stresscheck library policies src-severe
+    """
+    from stresscheck.cli.output import color, width, write
+    from stresscheck.errors import InputError, Problem
+    from stresscheck.report.library_table import library_text
+
+    wanted = SHELVES if shelf is None else (shelf,)
+    if shelf is not None and shelf not in SHELVES:
+        known = ", ".join(SHELVES)
+        raise InputError(
+            [Problem("bad-command", "command line", None, "", shelf, f"one of {known}", "name one of these")]
+        )
+    try:
+        write(library_text(wanted, name, width(), color=color()), None)
+    except KeyError as error:
+        raise InputError(
+            [
+                Problem(
+                    "unknown-name",
+                    "command line",
+                    None,
+                    shelf or "",
+                    str(name),
+                    f"one of {error.args[0]}",
+                    "name one of these",
+                )
+            ]
+        ) from None
