@@ -8,11 +8,11 @@ __version__ = "0.1.0"
 __all__ = ["InputError", "__version__", "load_design", "review"]
 
 if TYPE_CHECKING:
+    from stresscheck.chain import review
     from stresscheck.design.load import load_design
     from stresscheck.errors import InputError
-    from stresscheck.review import review
 
-_HOMES = {"load_design": "stresscheck.design.load", "review": "stresscheck.review", "InputError": "stresscheck.errors"}
+_HOMES = {"load_design": "stresscheck.design.load", "review": "stresscheck.chain", "InputError": "stresscheck.errors"}
 
 
 def __getattr__(name: str) -> Any:

@@ -22,10 +22,23 @@ def color() -> bool:
     return sys.stdout.isatty() and not os.environ.get("NO_COLOR") and os.environ.get("TERM") != "dumb"
 
 
+def _to_stdout(text: str) -> None:
+    """Write and flush here: what the reader of a pipe no longer takes ends the run with its own exit code."""
+    from stresscheck.cli import EXIT_PIPE
+
+    try:
+        sys.stdout.write(text)
+        sys.stdout.flush()
+    except BrokenPipeError:
+        # What is still in the buffer can't go anywhere: keep the interpreter from complaining about it.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        raise SystemExit(EXIT_PIPE) from None
+
+
 def write(text: str, target: Path | None) -> None:
     """To standard output, or to a file that appears only when it is complete."""
     if target is None:
-        sys.stdout.write(text)
+        _to_stdout(text)
         return
     from stresscheck.errors import InputError, Problem
 

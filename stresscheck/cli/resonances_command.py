@@ -16,10 +16,10 @@ def resonances(
 
     Every value is nominal. Example: stresscheck resonances tank.toml
     """
+    from stresscheck.chain import resonances_of
     from stresscheck.cli.output import color, width, write
     from stresscheck.design.load import load_design
     from stresscheck.report.modes_table import modes_table
-    from stresscheck.review import resonances_of
 
     found = resonances_of(load_design(file), state)
     write(modes_table(found, width(), color=color()), None)

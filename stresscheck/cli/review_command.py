@@ -144,7 +144,7 @@ def _one(
     interrupted: Callable[[], bool],
     label: str,
 ) -> Review:
-    from stresscheck.review import review as review_design
+    from stresscheck.chain import review as review_design
 
     start = time.monotonic()
 

@@ -21,11 +21,15 @@ WANTED = {
         ("farad", "a capacitance", "F", 1e-16, 1e3, "330 nF", False),
         ("henry", "an inductance", "H", 1e-12, 1e4, "22 uH", False),
         ("ohm", "a resistance", "ohm", 1e-9, 1e15, "50 mohm", False),
+        ("loss_ohm", "a loss resistance", "ohm", 1e-9, 1e6, "50 mohm", False),
         ("volt", "a voltage", "V", 1e-9, 1e8, "400 V", False),
         ("ampere", "a current", "A", 1e-12, 1e7, "30 A", False),
+        ("level_volt", "a level", "V", 1e-9, 1e6, "12 V", False),
+        ("level_ampere", "a level", "A", 1e-12, 1e6, "2 A", False),
         ("watt", "a power", "W", 1e-12, 1e9, "100 W", False),
         ("var", "a reactive power", "var", 1e-9, 1e10, "20 kvar", False),
         ("hertz", "a frequency", "Hz", 1e-3, 1e12, "85 kHz", False),
+        ("drive_hertz", "a drive frequency", "Hz", 0.1, 1e12, "85 kHz", False),
         ("second", "a time", "s", 1e-12, 1e7, "20 ms", False),
         ("metre", "a length", "m", 1e-7, 1e4, "12 mm", False),
         ("altitude", "an altitude", "m", -500.0, 20000.0, "300 m", False),
@@ -37,11 +41,14 @@ WANTED = {
         ("volt_per_second", "a slew rate", "V/s", 1e-3, 1e15, "100 V/us", False),
         ("tesla", "a flux density", "T", 1e-9, 1e2, "300 mT", False),
         ("joule", "an energy", "J", 1e-12, 1e9, "5 J", False),
-        ("signed_volt", "a voltage", "V", -1e8, 1e8, "160 V", False),
-        ("signed_ampere", "a current", "A", -1e7, 1e7, "2 A", False),
+        ("kilogram", "a mass", "kg", 1e-7, 1e5, "120 g", False),
+        ("signed_volt", "an offset", "V", -1e6, 1e6, "160 V", False),
+        ("signed_ampere", "an offset", "A", -1e6, 1e6, "2 A", False),
         ("fraction", "a fraction", "%", 0.0, 1.0, "30 %", False),
     )
 }
+
+"""What each kind of field takes. The bounds are wide on purpose; they catch MV for mV, mHz for MHz, Mohm for mohm."""
 
 
 def fail(code: str, expected: str, repair: str) -> PydanticCustomError:
@@ -168,7 +175,7 @@ def rating(name: str) -> Any:
 
 
 def loss(name: str) -> Any:
-    """Field type of a loss resistance: one quantity, or a curve over frequency."""
+    """Field type of a loss that may vary with frequency: one quantity, or a curve over frequency."""
     return or_curve(_reads(name), _schema(name), ("frequency",))
 
 
@@ -245,15 +252,18 @@ def flag() -> Any:
     return Annotated[bool, PlainValidator(validate), WithJsonSchema({"type": "boolean"})]
 
 
-def words(most: int, what: str) -> Any:
-    """Field type of a text for people: at most so many characters, none of them a control character."""
+def words(most: int, what: str, *, lines: bool = False) -> Any:
+    """Field type of a text for people: at most so many characters, none of them a control character.
+
+    lines: line feeds and tabs are allowed.
+    """
 
     def validate(raw: Any) -> str:
         if not isinstance(raw, str):
             raise fail("wrong-type", f"{what}, a text", "write it in quotation marks")
         if not raw.strip() or len(raw) > most:
             raise fail("bad-text", f"{what} of 1 to {most} characters", "shorten it, or fill it in")
-        if not printable(raw):
+        if not printable(raw) or not (lines or not {"\n", "\t"} & set(raw)):
             raise fail("bad-text", f"{what} without control or invisible formatting characters", "remove them")
         return raw
 

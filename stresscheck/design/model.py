@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-import datetime
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from pathlib import Path
 from types import MappingProxyType
 from typing import Annotated, Any
@@ -11,6 +10,7 @@ from typing import Annotated, Any
 from pydantic import AfterValidator, Field, PrivateAttr, model_validator
 
 from stresscheck.design import fields as f
+from stresscheck.design import shapes
 from stresscheck.design.parts import (
     Capacitor,
     Coupling,
@@ -24,6 +24,7 @@ from stresscheck.design.parts import (
 )
 from stresscheck.design.quantity import Quantity, Span, span_of
 
+LEVEL = '"12 V" or "2 A"'
 LEVELS = ("peak", "rms", "peak_to_peak", "available_power", "delivered_power")
 PART_KINDS = ("drive", "capacitor", "inductor", "resistor", "transformer", "coupling", "spacing", "probe")
 """Tables whose names must be unique across kinds, in the order of the file's documentation."""
@@ -60,33 +61,22 @@ class Drive(Table):
     """A voltage drive (level in V, or by power) or a current drive (level in A)."""
 
     between: f.node_pair()
-    peak: Any = None
-    rms: Any = None
-    peak_to_peak: Any = None
+    peak: shapes.level("level_volt", "level_ampere", LEVEL) | None = None
+    rms: shapes.level("level_volt", "level_ampere", LEVEL) | None = None
+    peak_to_peak: shapes.level("level_volt", "level_ampere", LEVEL) | None = None
     available_power: f.quantity("watt") | None = None
     delivered_power: f.quantity("watt") | None = None
-    frequency: f.quantity_range("hertz")
+    frequency: f.quantity_range("drive_hertz")
     phase: f.number(-360.0, 360.0, "a phase in degrees") | None = None
     waveform: f.choice("sine", "square", "triangle") = "sine"
-    harmonics: Any = None
+    harmonics: shapes.harmonics() | None = None
     duty: f.number(0.001, 0.999, "a duty") | None = None
-    offset: Any = None
+    offset: shapes.level("signed_volt", "signed_ampere", LEVEL) | None = None
     tolerance: f.tolerance(None) | None = None
     source_resistance: f.quantity("ohm") | None = None
     gating: Gating | None = None
     any_waveform: f.flag() = False
     rating: DriveRating | None = None
-
-    @model_validator(mode="before")
-    @classmethod
-    def _levels_are_quantities(cls, raw: Any) -> Any:
-        """Levels and offset are in V or in A, by what the text says."""
-        if isinstance(raw, dict):
-            raw = dict(raw)
-            for key in ("peak", "rms", "peak_to_peak", "offset"):
-                if key in raw and not isinstance(raw[key], Quantity):
-                    raw[key] = _Level(raw[key], key)
-        return raw
 
     @model_validator(mode="after")
     def _one_level(self) -> Drive:
@@ -98,9 +88,16 @@ class Drive(Table):
             raise f.fail("missing-key", "source_resistance beside available_power", "add source_resistance")
         if self.offset is not None and self.offset.unit != self.level_unit:
             raise f.fail("wrong-dimension", f"an offset in {self.level_unit}", "give level and offset in one unit")
-        _check_harmonics(self.harmonics)
         if not (self.level_span()[1].low > 0.0):
             raise f.fail("out-of-range", "a level above zero", "a drive without level isn't one: leave it out")
+        return self
+
+    @model_validator(mode="after")
+    def _one_waveform(self) -> Drive:
+        if self.harmonics is not None and "waveform" in self.model_fields_set:
+            raise f.fail("conflicting-keys", "either waveform or harmonics", "remove one of the two")
+        if self.duty is not None and self.waveform != "square":
+            raise f.fail("conflicting-keys", 'duty beside waveform = "square"', "remove duty, or name the waveform")
         return self
 
     @property
@@ -124,49 +121,31 @@ class Drive(Table):
         return span_of(self.frequency, None, None, middle="arithmetic")
 
 
-class _Level(Quantity):
-    """A level or offset that knows its unit, V or A."""
-
-    __slots__ = ("unit",)
-    unit: str
-
-    def __new__(cls, raw: Any, key: str) -> _Level:
-        signed = "signed_" if key == "offset" else ""
-        unit, name = ("A", "ampere") if isinstance(raw, str) and raw.rstrip().endswith("A") else ("V", "volt")
-        read = f.read_quantity(raw, f.WANTED[signed + name])
-        made = Quantity.__new__(cls, float(read), read.text)
-        assert isinstance(made, _Level)
-        object.__setattr__(made, "unit", unit)
-        return made
-
-
-def _check_harmonics(raw: Any) -> None:
-    if raw is None:
-        return
-    shape = "harmonics = [[order, relative size, phase in degrees], …]"
-    if not isinstance(raw, list) or not raw:
-        raise f.fail("wrong-type", shape, "write a list of lists")
-    for item in raw:
-        numbers = isinstance(item, list) and all(isinstance(x, (int, float)) and not isinstance(x, bool) for x in item)
-        if not numbers or len(item) != 3 or not isinstance(item[0], int) or item[0] < 1 or not 0 <= item[1] <= 1e3:
-            raise f.fail("wrong-type", shape, "order is a whole number from 1, size is not negative")
+def _nothing() -> Mapping[str, Any]:
+    return MappingProxyType({})
 
 
 class State(Table):
     """A changed circuit: `change` maps paths to new values, or a part to "open" or "short"."""
 
-    change: Mapping[str, Any] = Field(default_factory=dict)
+    change: shapes.changes() = Field(default_factory=_nothing)
     kind: f.choice("operating", "fault") = "operating"
-    frequency: f.quantity_range("hertz") | None = None
+    frequency: f.quantity_range("drive_hertz") | None = None
+
+    @model_validator(mode="after")
+    def _changes_something(self) -> State:
+        if not self.change and self.frequency is None:
+            raise f.fail("missing-key", 'change = { "PATH" = NEW VALUE }', "say what is different in this state")
+        return self
 
 
 class Accept(Table):
     """A finding that named people take responsibility for until a date."""
 
-    finding: f.words(200, "the id of a finding")
+    finding: shapes.finding_id()
     reason: f.words(1000, "a reason")
     by: f.words(200, "who takes responsibility")
-    until: datetime.date
+    until: shapes.date()
 
 
 def _frozen(value: Mapping[str, Any]) -> Mapping[str, Any]:
@@ -183,7 +162,7 @@ class Design(Table):
     title: f.words(200, "a title")
     revision: f.words(40, "a revision") | None = None
     derating: f.words(200, "a derating policy")
-    notes: f.words(20000, "notes") | None = None
+    notes: f.words(20000, "notes", lines=True) | None = None
     site: Site = Field(default_factory=Site)
     drive: _tables(Drive)
     capacitor: _tables(Capacitor)
@@ -202,6 +181,7 @@ class Design(Table):
     _opened: frozenset[str] = PrivateAttr(default=frozenset())
     _shorted: frozenset[str] = PrivateAttr(default=frozenset())
     _in_state: Mapping[str, Design] = PrivateAttr(default_factory=dict)
+    _line_of: Callable[[tuple[str, ...]], int | None] = PrivateAttr(default=lambda path: None)
 
     @property
     def file(self) -> str:
@@ -227,6 +207,13 @@ class Design(Table):
     def shorted(self) -> frozenset[str]:
         """Parts that are shorted in this state."""
         return self._shorted
+
+    def line_of(self, *path: str) -> int | None:
+        """Line of the file on which a key stands, or the nearest table around it; None where there is none.
+
+        `line_of("capacitor", "Ctank", "value")`. The positions are looked up at the first call.
+        """
+        return self._line_of(path)
 
     @property
     def states(self) -> tuple[str, ...]:

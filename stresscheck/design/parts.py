@@ -8,6 +8,7 @@ from pydantic import BaseModel, ConfigDict, model_validator
 
 from stresscheck.design import fields as f
 from stresscheck.design.quantity import Span, Tolerance, Value, span_of
+from stresscheck.design.shapes import turns_pair
 
 
 class Table(BaseModel):
@@ -81,6 +82,8 @@ class Valued(Table):
 
     @model_validator(mode="after")
     def _span_is_positive(self) -> Valued:
+        if self.nominal is not None and not isinstance(self.value, tuple):
+            raise f.fail("conflicting-keys", "nominal beside a value with two ends", "remove nominal, or give a range")
         span = self.span()
         if not (span.low > 0.0):
             raise f.fail("out-of-range", "a tolerance that leaves the value positive", "narrow the tolerance")
@@ -100,7 +103,7 @@ class Capacitor(Valued):
     nominal: f.quantity("farad") | None = None
     tolerance: f.tolerance("farad") | None = None
     dissipation_factor: f.loss_factor() | None = None
-    esr: f.loss("ohm") | None = None
+    esr: f.loss("loss_ohm") | None = None
     q: f.number(1.0, 1e7, "a quality factor") | None = None
     q_at: f.quantity("hertz") | None = None
     in_series: f.count(1, 10000, "units in series") | None = None
@@ -117,38 +120,54 @@ class Capacitor(Valued):
         _either(self, "q", "dissipation_factor")
         _either(self, "q", "esr")
         _either(self, "series_inductance", "self_resonance")
+        _units_once(self)
         return self
 
 
 class Winding(Table):
-    """How an inductor is wound: read and checked; its losses aren't computed from it yet."""
+    """How an inductor is wound: solid wire, or strands of litz; read and checked, its losses follow later."""
 
     wire_diameter: f.quantity("metre") | None = None
-    strands: f.count(1, 100000, "strands") | None = None
+    strands: f.count(2, 100000, "strands") | None = None
     strand_diameter: f.quantity("metre") | None = None
     turns: f.number(0.5, 1e5, "turns") | None = None
     layers: f.count(1, 1000, "layers") | None = None
     coil_diameter: f.quantity("metre") | None = None
     length: f.quantity("metre") | None = None
-    turn_voltage: f.quantity("volt") | None = None
-    layer_voltage: f.quantity("volt") | None = None
+    turn_insulation_voltage: f.quantity("volt") | None = None
+    layer_insulation_voltage: f.quantity("volt") | None = None
+
+    @model_validator(mode="after")
+    def _one_kind_of_wire(self) -> Winding:
+        _together(self, "strands", "strand_diameter")
+        _exactly_one(self, "wire_diameter", "strand_diameter")
+        return self
 
 
 class Core(Table):
-    """Coefficients of the core loss P_v = k f^a B^b, W/m^3 with f in Hz and B in T: read and checked only yet."""
+    """Coefficients of the core loss P = k f^a B^b with f in Hz and B (peak) in T.
 
-    k: f.number(0.0, 1e12, "the Steinmetz coefficient k, W/m^3")
-    a: f.number(0.5, 3.0, "the Steinmetz exponent of frequency")
-    b: f.number(0.5, 5.0, "the Steinmetz exponent of flux density")
-    volume: f.quantity("volume")
+    k is in W/m^3 where `volume` is given, in W/kg where `mass` is given.
+    """
+
+    k: f.number(0.0, 1e12, "the Steinmetz coefficient k, W/m^3 beside volume, W/kg beside mass")
+    a: f.number(0.5, 3.0, "the Steinmetz exponent of frequency in Hz")
+    b: f.number(0.5, 5.0, "the Steinmetz exponent of peak flux density in T")
+    volume: f.quantity("volume") | None = None
+    mass: f.quantity("kilogram") | None = None
     source: f.words(300, "where the coefficients stand") | None = None
+
+    @model_validator(mode="after")
+    def _volume_or_mass(self) -> Core:
+        _exactly_one(self, "volume", "mass")
+        return self
 
 
 class Inductor(Valued):
     value: f.quantity_range("henry")
     nominal: f.quantity("henry") | None = None
     tolerance: f.tolerance("henry") | None = None
-    resistance: f.loss("ohm") | None = None
+    resistance: f.loss("loss_ohm") | None = None
     q: f.number(1e-3, 1e7, "a quality factor") | None = None
     q_at: f.quantity("hertz") | None = None
     winding: Winding | None = None
@@ -164,6 +183,8 @@ class Inductor(Valued):
     def _losses_once(self) -> Inductor:
         _together(self, "q", "q_at")
         _either(self, "q", "resistance")
+        _either(self, "winding", "resistance")
+        _either(self, "winding", "q")
         _either(self, "parallel_capacitance", "self_resonance")
         return self
 
@@ -178,21 +199,18 @@ class Resistor(Valued):
     series_inductance: f.quantity("henry") | None = None
     rating: ResistorRating | None = None
 
+    @model_validator(mode="after")
+    def _tolerance_of_a_bank(self) -> Resistor:
+        _units_once(self)
+        return self
+
 
 class Transformer(Table):
     """An ideal transformer; magnetising and leakage inductance are inductors of the design."""
 
     primary: f.node_pair()
     secondary: f.node_pair()
-    turns: Any
-
-    @model_validator(mode="after")
-    def _turns_are_two(self) -> Transformer:
-        turns = self.turns
-        good = isinstance(turns, list) and len(turns) == 2
-        if not good or not all(isinstance(n, (int, float)) and not isinstance(n, bool) and 0 < n <= 1e6 for n in turns):
-            raise f.fail("wrong-type", "turns = [primary, secondary], two positive numbers", "write [16, 2]")
-        return self
+    turns: turns_pair()
 
 
 class Coupling(Table):
@@ -241,6 +259,20 @@ def _together(table: Table, *keys: str) -> None:
     if given and len(given) < len(keys):
         missing = [key for key in keys if key not in given]
         raise f.fail("missing-key", f"{' and '.join(missing)} beside {' and '.join(given)}", "give both or neither")
+
+
+def _exactly_one(table: Table, one: str, other: str) -> None:
+    """One of these keys, not both."""
+    _either(table, one, other)
+    if getattr(table, one) is None and getattr(table, other) is None:
+        raise f.fail("missing-key", f"{one} or {other}", "give one of the two")
+
+
+def _units_once(table: Table) -> None:
+    """A tolerance of units belongs to a bank of units."""
+    bank = table.in_series is not None or table.in_parallel is not None  # type: ignore[attr-defined]
+    if table.unit_tolerance is not None and not bank:  # type: ignore[attr-defined]
+        raise f.fail("missing-key", "in_series or in_parallel beside unit_tolerance", "say how many units there are")
 
 
 def _either(table: Table, one: str, other: str) -> None:

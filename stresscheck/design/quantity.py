@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 
 class Quantity(float):
@@ -19,8 +20,24 @@ class Quantity(float):
     def __setattr__(self, name: str, value: object) -> None:
         raise AttributeError("a quantity doesn't change")
 
-    def __reduce__(self) -> tuple[type[Quantity], tuple[float, str]]:
+    def __reduce__(self) -> tuple[type[Quantity], tuple[Any, ...]]:
         return Quantity, (float(self), self.text)
+
+
+class Level(Quantity):
+    """A level of a drive, or its offset: a figure whose `unit` is V or A."""
+
+    __slots__ = ("unit",)
+    unit: str
+
+    def __new__(cls, value: float, text: str, unit: str) -> Level:
+        made = float.__new__(cls, value)
+        object.__setattr__(made, "text", text)
+        object.__setattr__(made, "unit", unit)
+        return made
+
+    def __reduce__(self) -> tuple[type[Quantity], tuple[Any, ...]]:
+        return Level, (float(self), self.text, self.unit)
 
 
 @dataclass(frozen=True, slots=True)

@@ -8,45 +8,12 @@ from typing import Any
 
 import numpy as np
 import pytest
-from hypothesis import given
-from hypothesis import strategies as st
+from rated_parts import COIL, CURVE, KHZ, LINE, allowed, ask, capacitor, inductor, resistor
 
-from stresscheck.design.parts import Capacitor, Inductor, Resistor
-from stresscheck.limits.part_limits import OUTCOMES, PartLimits, limits_for
-from stresscheck.limits.policy import list_policies, load_policy
+from stresscheck.design.parts import Resistor
+from stresscheck.limits.part_limits import limits_for
+from stresscheck.limits.policy import load_policy
 from stresscheck.limits.quantities import quantities_of
-
-KHZ = np.array([85e3])
-CURVE = {"by": "frequency", "points": [["10 kHz", "450 V"], ["85 kHz", "400 V"], ["200 kHz", "170 V"]]}
-COIL = {"current_rms": "1 A", "voltage_peak": "1 kV"}
-LINE = {"by": "temperature", "points": [["70 degC", "10 W"], ["155 degC", "1 uW"]]}
-
-
-def capacitor(family: str | None = "polypropylene film", **rating: Any) -> Capacitor:
-    table = {"between": ["a", "b"], "value": "150 nF", "tolerance": "5 %", "rating": rating}
-    return Capacitor.model_validate(table | ({"family": family} if family else {}))
-
-
-def inductor(family: str | None = "air core", **rating: Any) -> Inductor:
-    table = {"between": ["a", "b"], "value": "22 uH", "rating": rating}
-    return Inductor.model_validate(table | ({"family": family} if family else {}))
-
-
-def resistor(family: str | None = "film", value: Any = "50 ohm", **rating: Any) -> Resistor:
-    table = {"between": ["a", "b"], "value": value, "tolerance": "5 %", "rating": rating}
-    return Resistor.model_validate(table | ({"family": family} if family else {}))
-
-
-def ask(
-    policy: str, kind: str, part: Any, quantity: str, kelvin: float | None = None, full: bool = False
-) -> PartLimits:
-    return limits_for(load_policy(policy), kind, "X", part, quantity, kelvin=kelvin, full=full)
-
-
-def allowed(found: PartLimits, hertz: float = 85e3) -> dict[str, float]:
-    assert found.outcome == "limits", found.why
-    return {limit.rating_key: float(limit.allowed(np.array([hertz]))[0]) for limit in found.limits}
-
 
 # --- which ratings a quantity is compared with -----------------------------------------------------
 
@@ -326,86 +293,3 @@ def test_policy_without_row_and_without_filling_is_not_checked(tmp_path: Path) -
     assert (found.outcome, found.limits) == ("not-checked", ())
     assert "own has no row" in found.why
     assert limits_for(policy, "capacitor", "X", part, "voltage_peak", kelvin=None, full=False).outcome == "limits"
-
-
-def test_fault_state_takes_full_ratings_of_every_policy() -> None:
-    part = capacitor("ceramic", voltage_dc="1 kV", voltage_rms=CURVE, temperature="85 degC")
-    for policy in list_policies():
-        for quantity, value in (("voltage_peak", 1000.0), ("voltage_rms", 400.0), ("temperature", 358.15)):
-            found = limits_for(policy, "capacitor", "X", part, quantity, kelvin=None, full=True)
-            (limit,) = found.limits
-            assert limit.allowed(KHZ)[0] == limit.rated(KHZ)[0] == pytest.approx(value, rel=1e-15)
-            assert limit.allowed_fraction == 1.0
-            assert "full rating" in limit.derating_source
-
-
-def test_fault_state_does_not_ask_for_the_family() -> None:
-    found = ask("src-severe", "capacitor", capacitor(None, voltage_dc="1 kV"), "voltage_peak", full=True)
-    assert found.outcome == "limits"
-
-
-# --- working ---------------------------------------------------------------------------------------
-
-
-def test_steps_redo_the_limit_by_numbers() -> None:
-    part = capacitor(voltage_rms=CURVE, source="sheet, p. 4")
-    (limit,) = ask("src-severe", "capacitor", part, "voltage_rms").limits
-    rated, derated = limit.steps(85e3)
-    assert (rated.value, rated.unit, rated.source) == (400.0, "V", "sheet, p. 4")
-    assert "85 kHz 400 V" in rated.numbers
-    assert "f = 85000 Hz" in rated.numbers
-    assert (derated.formula, derated.numbers) == ("fraction x V_rated", "0.8 x 400 V")
-    assert derated.value == pytest.approx(320.0)
-    assert derated.source == limit.derating_source
-
-
-@pytest.mark.parametrize(
-    ("policy", "numbers"),
-    [
-        ("src-severe", ["180 degC - 20 K"]),
-        ("nasa-eee-inst-002", ["0.75 x 180 degC - 10 K", "class 180 degC: 160 degC - 10 K"]),
-    ],
-)
-def test_steps_of_temperatures_show_the_rule(policy: str, numbers: list[str]) -> None:
-    found = ask(policy, "inductor", inductor(temperature="180 degC"), "temperature")
-    assert [limit.steps(85e3)[1].numbers for limit in found.limits] == numbers
-
-
-def test_steps_where_the_curve_is_silent_are_none() -> None:
-    (limit,) = ask("src-severe", "capacitor", capacitor(voltage_rms=CURVE), "voltage_rms").limits
-    assert limit.steps(1e6) == ()
-
-
-# --- laws ------------------------------------------------------------------------------------------
-
-
-@given(
-    st.sampled_from([policy.name for policy in list_policies()]),
-    st.sampled_from(["ceramic", "mica", "polyester", "vacuum", "electrolytic", "solid tantalum", "paper", "other"]),
-    st.floats(1.0, 1e5),
-    st.one_of(st.none(), st.floats(200.0, 500.0)),
-)
-def test_law_derated_limit_never_exceeds_the_rating(
-    policy: str, family: str, volt: float, kelvin: float | None
-) -> None:
-    part = capacitor(family, voltage_dc=f"{volt:.6g} V", voltage_rms=CURVE, temperature="125 degC")
-    for quantity in ("voltage_peak", "voltage_rms", "temperature"):
-        found = ask(policy, "capacitor", part, quantity, kelvin)
-        assert found.outcome in OUTCOMES
-        assert (found.why != "") is (found.outcome != "limits")
-        for limit in found.limits:
-            hertz = np.array([1.0, 2e4, 1.9e5])
-            assert np.all(limit.allowed(hertz) <= limit.rated(hertz) * (1.0 + 1e-12))
-            for text in (limit.rating_source, limit.derating_source, limit.rated_text):
-                assert text
-
-
-def test_law_stricter_uniform_policy_is_stricter_everywhere() -> None:
-    part = capacitor(voltage_dc="1 kV", voltage_rms=CURVE, current_rms="3 A", temperature="105 degC")
-    for quantity in ("voltage_peak", "voltage_rms", "current_rms", "temperature"):
-        levels = [
-            float(ask(p, "capacitor", part, quantity).limits[0].allowed(KHZ)[0])
-            for p in ("uniform-50", "uniform-80", "as-rated")
-        ]
-        assert levels == sorted(levels)
-        assert len(set(levels)) == 3

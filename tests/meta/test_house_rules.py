@@ -22,7 +22,7 @@ HEAVY = ("numpy", "pint", "pydantic", "rich")
 # Words that no output, document or comment of the project may use of a circuit or of itself.
 CLEARING = re.compile(r"\b(is safe|are safe|safe to|compliant|complies with|is permitted|passes the)\b", re.IGNORECASE)
 OUT_OF_PLACE = re.compile(
-    "|".join(["tran" + "script", "lec" + "ture notes", "course " + "material", "/wo" + "rk/", "/tm" + "p/"]),
+    "|".join([r"\btran" + r"scripts?\b", "lec" + "ture notes", "course " + "material", "/wo" + "rk/", "/tm" + "p/"]),
     re.IGNORECASE,
 )
 
