@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from difflib import get_close_matches
 from typing import Any
 
@@ -13,17 +13,7 @@ from stresscheck.errors import Problem
 Place = Callable[[tuple[str, ...]], int | None]
 """Key path → line, None where none can be named."""
 
-_EXPECTED = {
-    "missing": "this key",
-    "model_type": "a table",
-    "dict_type": "a table",
-    "mapping_type": "a table",
-    "model_attributes_type": "a table",
-    "date_type": "a date such as 2027-03-01",
-    "date_parsing": "a date such as 2027-03-01",
-    "date_from_datetime_parsing": "a date such as 2027-03-01",
-    "date_from_datetime_inexact": "a date such as 2027-03-01",
-}
+_TABLES = ("model_type", "dict_type", "mapping_type", "model_attributes_type")
 
 
 def as_problems(
@@ -36,51 +26,45 @@ def as_problems(
 
 def _problem(error: Any, raw: Mapping[str, Any], model: type[BaseModel], file: str, line: Place) -> Problem:
     path = tuple(str(part) for part in error["loc"])
-    kind = error["type"]
+    key, kind, found = key_text(path), error["type"], show(value_at(raw, path))
     if kind == "extra_forbidden":
         return _unknown_key(path, model, file, line)
     if kind == "missing":
-        table = ".".join(path[:-1]) or "the file"
-        return Problem(
-            "missing-key", file, line(path[:-1]), ".".join(path), "nothing", f"the key {path[-1]}",
-            f"add {path[-1]} = … to {table}",
-        )  # fmt: skip
+        table = key_text(path[:-1]) or "the top of the file"
+        repair = f"add {path[-1]} = … to {table}"
+        return Problem("missing-key", file, line(path[:-1]), key, "nothing", f"the key {path[-1]}", repair)
     if kind == "stresscheck":
         told = error["ctx"]
-        return Problem(
-            told["code"], file, line(path), ".".join(path), show(value_at(raw, path)), told["expected"], told["repair"]
-        )
-    expected = _EXPECTED.get(kind, "another kind of value")
-    return Problem(
-        "wrong-type",
-        file,
-        line(path),
-        ".".join(path),
-        show(value_at(raw, path)),
-        expected,
-        "see the design file's format",
-    )
+        return Problem(told["code"], file, line(path), key, found, told["expected"], told["repair"])
+    if kind in _TABLES:
+        keys = known_keys(model, path)
+        example = f"[{key}]" if keys else f"[{key}.NAME]"
+        return Problem("wrong-type", file, line(path), key, found, f"a table such as {example}", "write it as a table")
+    return Problem("wrong-type", file, line(path), key, found, "another kind of value", "see the schema command")
 
 
 def _unknown_key(path: tuple[str, ...], model: type[BaseModel], file: str, line: Place) -> Problem:
     known = known_keys(model, path[:-1])
     near = nearest(path[-1], known)
+    found, expected = f"the key {show(path[-1])}", "one of " + ", ".join(known)
     repair = f"did you mean {near}?" if near else "remove it"
-    return Problem(
-        "unknown-key",
-        file,
-        line(path),
-        ".".join(path),
-        f"the key {show(path[-1])}",
-        "one of " + ", ".join(known),
-        repair,
-    )
+    return Problem("unknown-key", file, line(path), key_text(path), found, expected, repair)
 
 
-def nearest(word: str, known: list[str]) -> str:
+def key_text(path: tuple[str, ...]) -> str:
+    """A key path for an error: printable whatever the file calls its keys, each part at most 60 characters."""
+    return ".".join(_plain(part if len(part) <= 60 else part[:57] + "…") for part in path)
+
+
+def _plain(text: str) -> str:
+    return text if text.isprintable() else text.encode("unicode_escape").decode("ascii")
+
+
+def nearest(word: str, known: Iterable[str]) -> str:
     """The known word that looks most like this one, empty where none does."""
-    close = get_close_matches(word.lower(), [k.lower() for k in known], n=1, cutoff=0.6)
-    return next((k for k in known if close and k.lower() == close[0]), "")
+    folded = {k.lower(): k for k in known}
+    close = get_close_matches(word[:60].lower(), list(folded), n=1, cutoff=0.6)
+    return folded[close[0]] if close else ""
 
 
 def known_keys(model: type[BaseModel], path: tuple[str, ...]) -> list[str]:
@@ -124,10 +108,22 @@ def value_at(raw: Any, path: tuple[str, ...]) -> Any:
 
 
 def show(value: Any) -> str:
-    """A found value for an error: one line, printable, at most 60 characters."""
+    """A found value for an error, as TOML would write it: one line, printable, at most 60 characters."""
     if isinstance(value, Mapping):
         keys = ", ".join(show(key).strip('"') for key in list(value)[:6])
         return f"a table with {keys or 'no keys'}"
-    text = f'"{value}"' if isinstance(value, str) else repr(value)
-    text = text if len(text) <= 60 else text[:57] + "…"
-    return text.encode("unicode_escape").decode("ascii") if not text.isprintable() else text
+    text = _toml(value)
+    return _plain(text if len(text) <= 60 else text[:57] + "…")
+
+
+def _toml(value: Any) -> str:
+    """A value of a file about as the file wrote it; long lists are cut early."""
+    if isinstance(value, str):
+        return f'"{value[:80]}"' if len(value) <= 80 else f'"{value[:80]}'
+    if isinstance(value, bool):
+        return str(value).lower()
+    if isinstance(value, list):
+        return "[" + ", ".join(_toml(item) for item in value[:20]) + ("]" if len(value) <= 20 else "")
+    if isinstance(value, Mapping):
+        return "{ " + ", ".join(f"{key} = {_toml(item)}" for key, item in list(value.items())[:20]) + " }"
+    return str(value)
