@@ -244,7 +244,8 @@ def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool
         values = np.where(np.isfinite(values), values, -np.inf)
         row = values.argmax(axis=0)
         seen = Peaks(values[row, np.arange(values.shape[1])], points[row])
-        better = seen.value > state["peaks"].value * (1.0 + 1e-9)
+        best = state["peaks"].value
+        better = seen.value - best > 1e-9 * np.abs(best)
         if better.any():
             again = climb(problem.box, problem.values, problem.candidates, seen.point[better])
             state["peaks"] = merge(merge(state["peaks"], seen), again)

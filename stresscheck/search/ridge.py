@@ -50,7 +50,7 @@ def along_ridges(box: Box, evaluate: Evaluate, retune: Retune, tunable: tuple[in
 def gained(before: Peaks, after: Peaks) -> bool:
     """True where any function gained more than rounding."""
     with np.errstate(invalid="ignore"):
-        return bool((after.value > before.value * (1.0 + LEAST_GAIN)).any())
+        return bool((after.value - before.value > LEAST_GAIN * np.abs(before.value)).any())
 
 
 def _steps(box: Box, retune: Retune, starts: Floats, target: Indices, moved: int, tuned: int) -> Floats:
