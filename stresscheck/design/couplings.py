@@ -4,37 +4,41 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from itertools import product
+from typing import Any
 
 from stresscheck.design.model import Design
 from stresscheck.design.problems import nearest, show
+from stresscheck.design.topology import PROBLEM
 
-PROBLEM = tuple[str, tuple[str, ...], str, str, str]
-"""(code, key path, found, expected, repair)."""
 MOST_RANGES = 8
 """Ranges of coupling factors whose ends are all combined: 256 matrices."""
 Factors = dict[frozenset[str], float]
 
 
-def coupling_problems(design: Design) -> list[PROBLEM]:
-    """Couplings of coils that don't exist, twice the same pair, or factors that no coils can have together."""
+def coupling_problems(raw: Mapping[str, Any]) -> list[PROBLEM]:
+    """Couplings of coils that don't exist, and two couplings of one pair, by the tables as they stand."""
     problems: list[PROBLEM] = []
     pairs: dict[frozenset[str], str] = {}
-    for name, part in design.coupling.items():
+    coils, tables = raw.get("inductor", {}), raw.get("coupling", {})
+    for name, part in tables.items() if isinstance(tables, Mapping) else ():
         path = ("coupling", name, "of")
-        for coil in part.of:
-            if coil not in design.inductor:
-                near = nearest(coil, design.inductor)
+        of = part.get("of") if isinstance(part, Mapping) else None
+        if not isinstance(of, list) or len(of) != 2 or not all(isinstance(coil, str) for coil in of):
+            continue
+        for coil in of:
+            if coil not in coils:
+                near = nearest(coil, coils)
                 repair = f"did you mean {near}?" if near else "name two inductors"
                 problems.append(("unknown-name", path, show(coil), "an inductor of this design", repair))
-        pair = frozenset(part.of)
+        pair = frozenset(of)
         if pair in pairs:
             found = f"the coils of {pairs[pair]} again"
             problems.append(("bad-coupling", path, found, "one coupling for each pair of coils", "remove one"))
         pairs.setdefault(pair, name)
-    return problems or _impossible(design)
+    return problems
 
 
-def _impossible(design: Design) -> list[PROBLEM]:
+def impossible_couplings(design: Design) -> list[PROBLEM]:
     """The energy of coils is positive whatever their currents: the matrix of factors is positive definite.
 
     Positive definite matrices are a convex set, so a box of factors lies in it as soon as its corners do. Scaling
@@ -42,17 +46,14 @@ def _impossible(design: Design) -> list[PROBLEM]:
     """
     for corner in _corners(design):
         if not positive_definite(corner):
-            worst = max(design.coupling, key=lambda n: max(map(abs, (design.coupling[n].span().low, _high(design, n)))))
+            sizes_of = {n: max(abs(p.span().low), abs(p.span().high)) for n, p in design.coupling.items()}
+            worst = max(sizes_of, key=lambda name: sizes_of[name])
             sizes = ", ".join(f"{'-'.join(sorted(pair))} {factor:g}" for pair, factor in list(corner.items())[:6])
             return [(
                 "bad-coupling", ("coupling", worst, "factor"), f"factors that no coils can have together ({sizes})",
                 "factors of a positive definite inductance matrix", "reduce the factors or their ranges",
             )]  # fmt: skip
     return []
-
-
-def _high(design: Design, name: str) -> float:
-    return design.coupling[name].span().high
 
 
 def _corners(design: Design) -> Iterator[Factors]:

@@ -193,7 +193,9 @@ def tolerance(name: str | None) -> Any:
         if isinstance(raw, str) and name is not None:
             try:
                 return parse(raw, share), False
-            except UnitError:
+            except UnitError as problem:
+                if problem.code not in ("wrong-dimension", "unknown-unit"):
+                    raise fail(problem.code, problem.expected, problem.repair) from None
                 whole = WANTED[name]
                 absolute = Wanted("a tolerance", whole.unit, -whole.high, whole.high, "5 %")
                 return float(read_quantity(raw, absolute)), True

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import hashlib
-import tomllib
 from collections.abc import Mapping
 from pathlib import Path
 from types import MappingProxyType
@@ -11,30 +10,35 @@ from typing import Any
 
 from pydantic import ValidationError
 
+from stresscheck.design.accepts import accept_problems
+from stresscheck.design.couplings import coupling_problems, impossible_couplings
 from stresscheck.design.fields import is_name
 from stresscheck.design.model import PART_KINDS, Design
 from stresscheck.design.parts_file import with_part
-from stresscheck.design.positions import key_lines
-from stresscheck.design.problems import as_problems, show
-from stresscheck.design.states import changed
-from stresscheck.design.topology import coupling_problems, topology_problems
+from stresscheck.design.positions import Lines
+from stresscheck.design.problems import as_problems, key_text, nearest, show
+from stresscheck.design.solvable import solvable_problems
+from stresscheck.design.states import Changed, changed_states
+from stresscheck.design.toml_text import LARGEST, tables_of, too_large, unreadable
+from stresscheck.design.topology import topology_problems
 from stresscheck.errors import InputError, Problem
 
-LARGEST = 1 << 20
-DEEPEST = 40
-"""Brackets that may be open at once: more is no design, and slows every reader of TOML."""
+EMPTY_IS_WRONG = ("rating", "winding", "core", "gating")
+"""Tables inside a part that say nothing when they are empty."""
 
 
 def load_design(path: str | Path) -> Design:
     """Read a design file. Raises InputError with every problem found in it."""
     file = Path(path)
+    name = key_text((file.name,))
     try:
-        size = file.stat().st_size
-        data = file.read_bytes() if size <= LARGEST else b"\0" * (LARGEST + 1)
-    except OSError as error:
-        reason = error.strerror or "an error of the file system"
-        raise InputError([_unreadable(file.name, reason, "a file that can be read", "check name and rights")]) from None
-    return read_design(data, file.name, file.parent)
+        if file.stat().st_size > LARGEST:
+            raise InputError([too_large(name)])
+        data = file.read_bytes()
+    except (OSError, ValueError) as error:
+        reason = getattr(error, "strerror", None) or "a name that no file can have"
+        raise InputError([unreadable(name, reason, "a file that can be read", "check name and rights")]) from None
+    return read_design(data, name, file.parent)
 
 
 def read_design(text: str | bytes, file: str = "design.toml", folder: Path | None = None) -> Design:
@@ -43,89 +47,45 @@ def read_design(text: str | bytes, file: str = "design.toml", folder: Path | Non
     Raises InputError with every problem found.
     """
     data = text.encode("utf-8", "surrogatepass") if isinstance(text, str) else text
-    decoded = _decoded(data, file)
-    raw = _toml(decoded, file)
+    decoded, raw = tables_of(data, file)
     return _Loader(decoded, raw, file, folder).design(hashlib.sha256(data).hexdigest())
-
-
-def _decoded(data: bytes, file: str) -> str:
-    if len(data) > LARGEST:
-        raise InputError([_unreadable(file, "more than 1 MiB", "a text of at most 1 MiB", "is it a design file?")])
-    if data.startswith(b"\xef\xbb\xbf"):
-        raise InputError([_unreadable(file, "a byte order mark", "UTF-8 without one", "save it as plain UTF-8")])
-    try:
-        return data.decode("utf-8")
-    except UnicodeDecodeError as error:
-        place = f"a byte that isn't UTF-8 at position {error.start}"
-        raise InputError([_unreadable(file, place, "UTF-8 text", "save it as UTF-8")]) from None
-
-
-def _toml(text: str, file: str) -> dict[str, Any]:
-    depth = 0
-    for c in text:
-        depth = max(0, depth + (c in "[{") - (c in "]}"))
-        if depth > DEEPEST:
-            raise InputError([_unreadable(file, "brackets nested too deep", "a design file", "remove them")])
-    longest = max((line.split("=")[0].count(".") for line in text.splitlines()), default=0)
-    if longest > DEEPEST:
-        raise InputError([_unreadable(file, f"a key of {longest} parts", "a design file", "shorten the key")])
-    try:
-        return tomllib.loads(text)
-    except tomllib.TOMLDecodeError as error:
-        words = str(error)
-        line = _line_of(words)
-        raise InputError(
-            [Problem("not-toml", file, line, "", words.split(" (at")[0], "valid TOML 1.0", "correct the line")]
-        ) from None
-    except (RecursionError, ValueError):
-        raise InputError(
-            [_unreadable(file, "numbers or nesting beyond reason", "a design file", "shorten it")]
-        ) from None
-
-
-def _line_of(words: str) -> int | None:
-    """Line number in a message of tomllib, which ends with (at line N, column M)."""
-    _, _, tail = words.partition("(at line ")
-    digits = tail.split(",")[0]
-    return int(digits) if digits.isdigit() else None
-
-
-def _unreadable(file: str, found: str, expected: str, repair: str) -> Problem:
-    return Problem("file-unreadable", file, None, "", found, expected, repair)
 
 
 class _Loader:
     """Reads one file; lives only inside `read_design`."""
 
     def __init__(self, text: str, raw: dict[str, Any], file: str, folder: Path | None) -> None:
-        self.text, self.raw, self.file, self.folder = text, raw, file, folder
-        self.lines: dict[tuple[str, ...], int] | None = None
+        self.raw, self.file, self.folder = raw, file, folder
+        self.lines = Lines(text)
         self.problems: list[Problem] = []
 
-    def line(self, path: tuple[str, ...]) -> int | None:
-        """Line of a key, or of the nearest table around it."""
-        if self.lines is None:
-            self.lines = key_lines(self.text)
-        while path and path not in self.lines:
-            path = path[:-1]
-        return self.lines.get(path)
-
     def say(self, code: str, path: tuple[str, ...], found: str, expected: str, repair: str) -> None:
-        self.problems.append(Problem(code, self.file, self.line(path), ".".join(path), found, expected, repair))
+        self.problems.append(Problem(code, self.file, self.lines.of(path), key_text(path), found, expected, repair))
 
     def design(self, sha256: str) -> Design:
+        """The design with its states. Raises InputError with every problem."""
         self._names()
         raw = self._with_parts(self.raw)
+        for problem in (*topology_problems(raw), *coupling_problems(raw), *accept_problems(raw)):
+            self.say(*problem)
+        states = changed_states(raw)
+        for name, state in states.items():
+            for code, key, found, expected, repair in state.problems:
+                self.say(code, ("state", name, *key), found, expected, repair)
         design = self._validated(raw)
-        if design is not None:
-            design._file, design._folder, design._sha256 = self.file, self.folder, sha256
-            self._circuit(design)
-            if not self.problems:
-                design._in_state = MappingProxyType(self._states(design, raw))
+        if design is not None and not self.problems:
+            for problem in (*solvable_problems(design), *impossible_couplings(design)):
+                self.say(*problem)
+            self._mark(design, sha256)
+            design._in_state = MappingProxyType(self._in_states(states, sha256))
         if self.problems or design is None:
             unique = dict.fromkeys(self.problems)
             raise InputError(sorted(unique, key=lambda p: (p.line or 0, p.key)))
         return design
+
+    def _mark(self, design: Design, sha256: str) -> None:
+        design._file, design._folder, design._sha256 = self.file, self.folder, sha256
+        design._line_of = self.lines.of
 
     def _names(self) -> None:
         """Names that can be printed, unique across kinds; no empty tables."""
@@ -136,18 +96,26 @@ class _Loader:
                 continue
             if not table:
                 self.say("missing-key", (kind,), "an empty table", f"[{kind}.NAME] tables", "fill it or remove it")
-            for name in table:
+            for name, part in table.items():
                 if not is_name(name):
-                    self.say("bad-text", (kind, name), show(name), "a name of letters, digits, - and _", "rename it")
-                if kind in PART_KINDS and name in seen:
-                    self.say(
-                        "duplicate-name", (kind, name), f"{name}, which is a {seen[name]} already",
-                        "names unique across kinds", "rename one of the two",
-                    )  # fmt: skip
+                    expected = "a name of letters, digits, - and _, at most 40 characters"
+                    self.say("bad-text", (kind, name), show(name), expected, "rename it")
                 if kind in PART_KINDS:
-                    seen.setdefault(name, kind)
-            if kind == "state" and "normal" in table:
-                self.say("duplicate-name", ("state", "normal"), "a state called normal", "another name", "rename it")
+                    self._unique(kind, name, seen)
+                for key in EMPTY_IS_WRONG:
+                    if isinstance(part, Mapping) and part.get(key) == {}:
+                        self.say("missing-key", (kind, name, key), "an empty table", "keys", "fill it or remove it")
+        if self.raw.get("site") == {}:
+            self.say("missing-key", ("site",), "an empty table", "keys of the site", "fill it or remove it")
+        if isinstance(self.raw.get("state"), Mapping) and "normal" in self.raw["state"]:
+            expected = "another name: normal is the file as written"
+            self.say("duplicate-name", ("state", "normal"), "a state called normal", expected, "rename it")
+
+    def _unique(self, kind: str, name: str, seen: dict[str, str]) -> None:
+        if name in seen:
+            found = f"{show(name)}, the name of a {seen[name]} too"
+            self.say("duplicate-name", (kind, name), found, "names unique across kinds", "rename one of the two")
+        seen.setdefault(name, kind)
 
     def _with_parts(self, raw: dict[str, Any]) -> dict[str, Any]:
         out = dict(raw)
@@ -159,45 +127,40 @@ class _Loader:
     def _one_part(self, kind: str, name: str, part: Any) -> Any:
         if not isinstance(part, Mapping):
             return part
+        path = (kind, name, "part")
         try:
             return with_part(kind, part, self.folder)
         except KeyError as error:
-            known = str(error.args[0])
-            self.say(
-                "unknown-name",
-                (kind, name, "part"),
-                show(part["part"]),
-                f"a {kind}: {known}",
-                "see the library command",
-            )
+            known: tuple[str, ...] = error.args[0]
+            near = nearest(str(part["part"]).rpartition("#")[2], known)
+            repair = f"did you mean {near}?" if near else "see the library command, or FILE.toml#NAME"
+            names = ", ".join(known) or "none"
+            self.say("unknown-name", path, show(part["part"]), f"a part of kind {kind}: {names}", repair)
         except InputError as error:
+            found, expected = show(part["part"]), "a parts file that can be used"
+            self.say("bad-rating-file", path, found, expected, "mend the problems of that file")
             self.problems.extend(error.problems)
-        return {key: value for key, value in part.items() if key != "part"}
+        return None
 
     def _validated(self, raw: Mapping[str, Any]) -> Design | None:
+        """The model; a part whose parts file failed is left out, since all that it lacks would be blamed on it."""
+        kept = dict(raw)
+        for kind in ("capacitor", "inductor", "resistor"):
+            if isinstance(raw.get(kind), Mapping):
+                kept[kind] = {name: part for name, part in raw[kind].items() if part is not None}
         try:
-            return Design.model_validate(raw)
+            return Design.model_validate(kept)
         except ValidationError as error:
-            self.problems.extend(as_problems(error.errors(), raw, Design, self.file, self.line))
+            self.problems.extend(as_problems(error.errors(), raw, Design, self.file, self.lines.of))
             return None
 
-    def _circuit(self, design: Design) -> None:
-        for code, path, found, expected, repair in (*topology_problems(design), *coupling_problems(design)):
-            self.say(code, path, found, expected, repair)
-
-    def _states(self, design: Design, raw: Mapping[str, Any]) -> dict[str, Design]:
+    def _in_states(self, states: Mapping[str, Changed], sha256: str) -> dict[str, Design]:
         found: dict[str, Design] = {}
-        for name, state in design.state.items():
-            before = len(self.problems)
-            result = changed(design, raw, name, state)
-            for code, key, what, expected, repair in result.problems:
-                self.say(code, ("state", name, *key), what, expected, repair)
-            if len(self.problems) > before:
-                continue
-            there = self._state_design(name, result.raw)
+        for name, state in states.items():
+            there = self._state_design(name, state.raw)
             if there is not None:
-                there._file, there._folder, there._sha256 = design.file, design.folder, design.sha256
-                there._opened, there._shorted = result.opened, result.shorted
+                self._mark(there, sha256)
+                there._opened, there._shorted = state.opened, state.shorted
                 found[name] = there
         return found
 
@@ -206,15 +169,9 @@ class _Loader:
         try:
             there = Design.model_validate(raw)
         except ValidationError as error:
-            for problem in as_problems(error.errors(), raw, Design, self.file, lambda path: None):
-                self.say(
-                    problem.code,
-                    ("state", name, "change", problem.key),
-                    problem.found,
-                    problem.expected,
-                    problem.repair,
-                )
+            for p in as_problems(error.errors(), raw, Design, self.file, lambda path: None):
+                self.say(p.code, ("state", name, "change", p.key), p.found, p.expected, p.repair)
             return None
-        for code, path, found, expected, repair in coupling_problems(there):
+        for code, path, found, expected, repair in impossible_couplings(there):
             self.say(code, ("state", name, "change", ".".join(path)), found, expected, repair)
         return there

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from typing import Any
 
-from pydantic import BaseModel, ConfigDict, model_validator
+from pydantic import BaseModel, ConfigDict, Field, model_validator
 
 from stresscheck.design import fields as f
 from stresscheck.design.quantity import Span, Tolerance, Value, span_of
@@ -203,6 +204,18 @@ class Resistor(Valued):
     def _tolerance_of_a_bank(self) -> Resistor:
         _units_once(self)
         return self
+
+
+class PartsFile(Table):
+    """A file of parts by name; each is read by the model of its kind, as if it stood in a design."""
+
+    title: f.words(200, "a title")
+    source: f.words(200, "where the figures stand")
+    evidence: f.words(40, "how the figures were read")
+    invented: f.flag() = False
+    capacitor: Mapping[str, Capacitor] = Field(default_factory=dict)
+    inductor: Mapping[str, Inductor] = Field(default_factory=dict)
+    resistor: Mapping[str, Resistor] = Field(default_factory=dict)
 
 
 class Transformer(Table):

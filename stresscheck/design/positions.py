@@ -16,6 +16,22 @@ def key_lines(text: str) -> dict[KeyPath, int]:
     return _Walk(text).run()
 
 
+class Lines:
+    """Lines of the keys of one text; the text is walked when the first line is asked for."""
+
+    def __init__(self, text: str) -> None:
+        self._text = text
+        self._lines: dict[KeyPath, int] | None = None
+
+    def of(self, path: KeyPath) -> int | None:
+        """Line of a key, or of the nearest table around it; None for the top of the file."""
+        if self._lines is None:
+            self._lines = key_lines(self._text)
+        while path and path not in self._lines:
+            path = path[:-1]
+        return self._lines.get(path)
+
+
 class _Walk:
     """A cursor over the text; lives only inside `key_lines`."""
 

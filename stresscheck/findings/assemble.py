@@ -217,7 +217,7 @@ def _finding(
         float(worst.corners[column]) if math.isfinite(worst.corners[column]) else None,
     )
     return Finding(
-        id=f"{check.part}.{check.quantity}@{state}", state=state, state_kind=kind, event="steady",
+        id=check.id(state), state=state, state_kind=kind, event=check.event,
         part=check.part, kind=check.kind, quantity=check.quantity, unit=check.unit, verdict=result.verdict,
         nominal=float(worst.nominal[column]) if math.isfinite(worst.nominal[column]) else None,
         worst=stress, bound=None if bound is None else float(bound), rated=result.rated,
@@ -255,7 +255,7 @@ def _lost(check: Check, state: str, kind: str, why: str) -> Finding:
     result = judge(check.limits, "", None, None, 0.0, why)
     limit = result.limit
     return Finding(
-        id=f"{check.part}.{check.quantity}@{state}", state=state, state_kind=kind, event="steady",
+        id=check.id(state), state=state, state_kind=kind, event=check.event,
         part=check.part, kind=check.kind, quantity=check.quantity, unit=check.unit, verdict=result.verdict,
         rated=result.rated, allowed=result.allowed,
         allowed_fraction=None if limit is None else limit.allowed_fraction,

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
+from stresscheck.limits.families import load_families
 from stresscheck.limits.part_limits import PartLimits, limits_for
 from stresscheck.limits.policy import Policy
 from stresscheck.limits.quantities import KINDS, quantities_of
@@ -18,7 +19,7 @@ if TYPE_CHECKING:
 
 @dataclass(frozen=True, slots=True)
 class Check:
-    """One stress to be compared. `obstacle`: why it can't be computed, empty where it can."""
+    """One stress to be compared. `obstacle`: why it can't be computed, empty where it can; `event` as in Finding."""
 
     part: str
     kind: str
@@ -26,6 +27,11 @@ class Check:
     unit: str
     limits: PartLimits
     obstacle: str = ""
+    event: str = "steady"
+
+    def id(self, state: str) -> str:
+        """Id of the finding in a state: PART.QUANTITY@STATE, with /EVENT behind it where the event isn't steady."""
+        return f"{self.part}.{self.quantity}@{state}" + ("" if self.event == "steady" else f"/{self.event}")
 
 
 def part_notes(design: Design) -> dict[str, PartNotes]:
@@ -79,7 +85,26 @@ def checks_of(design: Design, policy: Policy, kelvin: Mapping[str, float], *, fu
                     continue
                 obstacle = everything or _obstacle(design, kind, name, part, quantity.name)
                 found.append(Check(name, kind, quantity.name, quantity.unit, limits, obstacle))
-    return found
+    return found + _declared_only(design, found)
+
+
+def _declared_only(design: Design, found: list[Check]) -> list[Check]:
+    """Checks that the file asks for and that don't exist yet: said, not passed over in silence."""
+    none = PartLimits((), False, "", "not-checked")
+    out = [
+        Check(name, kind, "voltage_peak", "V", none, f"the check of a {kind} isn't made yet")
+        for kind in ("spacing", "probe")
+        for name in getattr(design, kind)
+    ]
+    for name, drive in present(design, "drive"):
+        if drive.any_waveform:
+            why = f"any_waveform of drive {name}: the bound for every waveform isn't computed yet"
+            out += [
+                Check(check.part, check.kind, check.quantity, check.unit, check.limits, why, "any-waveform")
+                for check in found
+                if check.quantity in ("voltage_peak", "current_peak") and check.kind != "drive"
+            ]
+    return out
 
 
 def unavailable(design: Design) -> list[str]:
@@ -101,9 +126,16 @@ def unavailable(design: Design) -> list[str]:
     return found
 
 
+def _is_class_2(part: Any) -> bool:
+    family = load_families().find("capacitor", part.family) if part.family else None
+    return family is not None and family.belongs_to(("ceramic class 2",))
+
+
 def _obstacle(design: Design, kind: str, name: str, part: Any, quantity: str) -> str:
     """Why one stress can't be computed from what the file declares."""
     heat = quantity in ("dissipation", "temperature")
+    if kind == "capacitor" and _is_class_2(part):
+        return f"{name} is a class-2 ceramic: its capacitance falls with voltage, so a linear solution doesn't hold"
     if heat and kind == "capacitor" and part.dissipation_factor is None and part.esr is None and part.q is None:
         return f"no loss of {name} is declared (dissipation_factor, esr or q)"
     if heat and kind == "inductor":
