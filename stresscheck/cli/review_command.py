@@ -125,6 +125,7 @@ class _Interrupt:
 
     def __init__(self) -> None:
         self.seen = False
+        self.start = self.told = time.monotonic()
         signal.signal(signal.SIGINT, self._first)
 
     def _first(self, number: int, frame: object) -> None:
@@ -133,6 +134,11 @@ class _Interrupt:
         print("ending the search; once more to end without a report", file=sys.stderr)
 
     def asked(self) -> bool:
+        """Whether to end; called all the time while searching, so it also tells a waiting person that work goes on."""
+        now = time.monotonic()
+        if now - self.told > 1.0 and sys.stderr.isatty():
+            self.told = now
+            print(f"searching and proving, {now - self.start:.0f} s", file=sys.stderr)
         return self.seen
 
 

@@ -15,7 +15,7 @@ from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import check_levels
 from stresscheck.errors import CheckError
 from stresscheck.findings.checks import Check, checks_of, part_notes
-from stresscheck.findings.explain import reason_for, steps_for
+from stresscheck.findings.explain import carriers_of, reason_for, steps_for
 from stresscheck.findings.finding import Finding, Place, Proof
 from stresscheck.findings.judge import judge
 from stresscheck.findings.worst import Asked, Limiting, Problem, Worst, worst_case
@@ -227,6 +227,7 @@ def _finding(
         rating_source="" if limit is None else limit.rating_source,
         derating_source="" if limit is None else limit.derating_source,
         why=result.why, ratio_bound=bound_use, proof=proof, reason="" if dead else reason_for(network, check, point),
+        remarks=() if dead else carriers_of(network, point),
     )  # fmt: skip
 
 

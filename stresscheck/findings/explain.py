@@ -45,6 +45,20 @@ def distance(mode: Mode, hertz: float) -> float:
     return abs(mode.hertz - hertz) / bandwidth
 
 
+def carriers_of(network: Network, point: Floats) -> tuple[str, ...]:
+    """Which parts carry the resonance that the drives meet at a point, by their share of its energy; empty without."""
+    found = []
+    modes = natural_modes(network, point)
+    for line in network.lines:
+        hertz = float(point[line.frequency_axis])
+        near = [m for m in modes if distance(m, hertz) <= NEAR]
+        if near:
+            mode = min(near, key=lambda m: abs(m.hertz - hertz))
+            shares = ", ".join(f"{part} {100.0 * share:.0f} %" for part, share in mode.energy if share >= 0.01)
+            found.append(f"the resonance at {_text(mode.hertz, 'Hz')} is carried by {shares}")
+    return tuple(found)
+
+
 def _single_drive(network: Network, point: Floats) -> tuple[Phasors | None, float]:
     """Phasors and peak drive voltage where a single voltage drive acts; (None, 0) otherwise."""
     if len(network.sources) != 1 or network.sources[0].branch is None:

@@ -63,5 +63,7 @@ def _proof(out: Lines, finding: Finding) -> None:
         )
     if finding.ratio_bound is not None:
         out.add(f"that is at most {figures.percent(finding.ratio_bound)} of the allowed value", indent=2)
+    for remark in finding.remarks:
+        out.add(remark, indent=2)
     if proof.corners is not None:
         out.add(f"largest at the corners of the box: {proof.corners:.7g} {finding.unit}", indent=2)

@@ -1,6 +1,6 @@
 """Start-up of whole processes as ratios to `python -c pass` of the same run.
 
-    python tests/benchmarks/startup.py [rounds]
+python tests/benchmarks/startup.py [rounds]
 """
 
 from __future__ import annotations

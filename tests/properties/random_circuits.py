@@ -38,7 +38,7 @@ class Circuit:
         for name, a, b, hertz, level, phase, unit, ohm in self.drives:
             out.append(
                 f'[drive.{name}]\nbetween = ["{a}", "{b}"]\npeak = "{level!r} {unit}"\nfrequency = "{hertz!r} Hz"\n'
-                f"phase = {phase!r}\nsource_resistance = \"{ohm!r} ohm\"\n"
+                f'phase = {phase!r}\nsource_resistance = "{ohm!r} ohm"\n'
                 'rating = { current_peak = "1 MA", power = "900 MW" }'
             )
         for kind, name, a, b, value, loss in self.parts:
@@ -153,5 +153,7 @@ def random_circuit(seed: int) -> Circuit:
         unit = "A" if rng.random() < 0.3 else "V"
         node = nodes[int(rng.integers(0, len(nodes)))]
         ohm = float(rng.uniform(1.0, 100.0))
-        circuit.drives.append((f"D{n}", node, "ground", f, float(rng.uniform(1, 20)), float(rng.uniform(-180, 180)), unit, ohm))
+        circuit.drives.append(
+            (f"D{n}", node, "ground", f, float(rng.uniform(1, 20)), float(rng.uniform(-180, 180)), unit, ohm)
+        )
     return circuit

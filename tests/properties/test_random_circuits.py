@@ -132,13 +132,17 @@ def test_reciprocity_transfer_is_the_same_both_ways(seed: int) -> None:
     """Current through a short at B from a voltage at A equals that at A from the same voltage at B (no transformer
     needed: it is reciprocal too). Two drives of small resistance, one at a time at work."""
     circuit = random_circuit(seed)
-    a, b = circuit.parts[0][2], next((p[2] for p in reversed(circuit.parts) if p[2] not in ("t", circuit.parts[0][2])), None)
+    a, b = (
+        circuit.parts[0][2],
+        next((p[2] for p in reversed(circuit.parts) if p[2] not in ("t", circuit.parts[0][2])), None),
+    )
     if b is None:
         pytest.skip("only one node")
     currents = []
     for levels in ((1.0, 1e-9), (1e-9, 1.0)):
         drives = [
-            (f"D{n}", node, "ground", 1e5, level, 0.0, "V", 10.0) for n, (node, level) in enumerate(zip((a, b), levels, strict=True))
+            (f"D{n}", node, "ground", 1e5, level, 0.0, "V", 10.0)
+            for n, (node, level) in enumerate(zip((a, b), levels, strict=True))
         ]
         found, _ = _review(replace(circuit, drives=drives))
         currents.append(found["D1.current_peak" if levels[0] == 1.0 else "D0.current_peak"])

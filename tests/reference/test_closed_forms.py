@@ -17,7 +17,9 @@ FARAD = 1.0 / ((TAU * HERTZ) ** 2 * HENRY)
 X0 = TAU * HERTZ * HENRY
 
 
-def _worst(r: float, *, l_tol: float = 0.0, c_tol: float = 0.0, r_tol: float = 0.0, band: float = 0.0, gap: float = 0.05):
+def _worst(
+    r: float, *, l_tol: float = 0.0, c_tol: float = 0.0, r_tol: float = 0.0, band: float = 0.0, gap: float = 0.05
+):
     """Findings of a series tank across 1 V peak, with tolerances as fractions and a band around its resonance."""
 
     def tolerance(t: float) -> str:

@@ -112,7 +112,9 @@ def test_o37_boylestad_21_10_input_impedance() -> None:
     assert found.drives["E"].phase_degrees == pytest.approx(89.02, abs=5e-3)
 
 
-def _in_series(volts: list[tuple[float, float]], tables: list[str], basis: str = "peak", offset: float = 0.0) -> Figures:
+def _in_series(
+    volts: list[tuple[float, float]], tables: list[str], basis: str = "peak", offset: float = 0.0
+) -> Figures:
     """Sine drives (hertz, level) stacked in series between node in and ground."""
     drives = []
     for n, (hertz, level) in enumerate(volts):

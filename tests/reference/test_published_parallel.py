@@ -16,9 +16,7 @@ TAU = 2.0 * math.pi
 
 def _coil_and_capacitor(r: float, henry: float, farad: float, volt: float, hertz: float) -> Figures:
     extra = f'resistance = "{r!r} ohm"' if r else ""
-    return solve(
-        drive(hertz, volt), inductor("L", "in", "ground", henry, extra), capacitor("C", "in", "ground", farad)
-    )
+    return solve(drive(hertz, volt), inductor("L", "in", "ground", henry, extra), capacitor("C", "in", "ground", farad))
 
 
 def test_o23_lec_ii_5_parallel_rlc() -> None:
@@ -34,10 +32,28 @@ def test_o23_lec_ii_5_parallel_rlc() -> None:
 
 
 def test_o24_lec_ii_6_ideal_tank_over_frequency() -> None:
-    printed = (
-        "9.632e-3 8.506e-3 7.455e-3 6.470e-3 5.542e-3 4.663e-3 3.828e-3 3.033e-3 2.271e-3 1.540e-3 8.373e-4 1.590e-4 "
-        "4.969e-4 1.132e-3 1.749e-3 2.350e-3 2.934e-3 3.505e-3 4.063e-3 4.609e-3"
-    ).split()
+    printed = [
+        "9.632e-3",
+        "8.506e-3",
+        "7.455e-3",
+        "6.470e-3",
+        "5.542e-3",
+        "4.663e-3",
+        "3.828e-3",
+        "3.033e-3",
+        "2.271e-3",
+        "1.540e-3",
+        "8.373e-4",
+        "1.590e-4",
+        "4.969e-4",
+        "1.132e-3",
+        "1.749e-3",
+        "2.350e-3",
+        "2.934e-3",
+        "3.505e-3",
+        "4.063e-3",
+        "4.609e-3",
+    ]
     for n, text in enumerate(printed):
         found = _coil_and_capacitor(0.0, 100e-3, 10e-6, 1.0, 100.0 + n * 100.0 / 19.0)
         assert digits(found["E.current_rms"], text), n
@@ -206,9 +222,7 @@ def test_o44_detuned_bank_voltage_rise(rise: float, volt: float) -> None:
     assert found["C.voltage_rms"] == pytest.approx(volt, abs=5e-4)
 
 
-@pytest.mark.parametrize(
-    ("tag", "esr", "farad", "hertz", "factor"), [("O60 BIRD 39.1", 1.5, 400e-12, 8e6, 0.030159)]
-)
+@pytest.mark.parametrize(("tag", "esr", "farad", "hertz", "factor"), [("O60 BIRD 39.1", 1.5, 400e-12, 8e6, 0.030159)])
 def test_o60_loss_factor_of_a_series_resistance(tag, esr, farad, hertz, factor) -> None:
     found = solve(
         drive(hertz, 1.0), resistor("R", "in", "a", 1e3), capacitor("C", "a", "ground", farad, f'esr = "{esr!r} ohm"')

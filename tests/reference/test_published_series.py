@@ -114,7 +114,9 @@ def test_o8d_up2_resonance_and_q() -> None:
     found = series(100.0, 150e-3, 0.25e-6, 500.0, 1.0)
     omega = TAU * 821.87
     assert found.resonances[0].q == pytest.approx(7.746, abs=5e-4)
-    assert math.hypot(TAU * found.resonances[0].hertz, 1 / found.resonances[0].ring_time_s) == pytest.approx(omega, rel=1e-5)
+    assert math.hypot(TAU * found.resonances[0].hertz, 1 / found.resonances[0].ring_time_s) == pytest.approx(
+        omega, rel=1e-5
+    )
 
 
 def test_o9_lec_ii_5_series_rlc() -> None:
@@ -136,7 +138,9 @@ def test_o10_lec_ii_6_series_tank_peak_isn_t_missed() -> None:
 
 def test_o11_bird_15_15_coil_and_capacitor() -> None:
     found = solve(
-        drive(50.0, 300.0), inductor("L", "in", "a", 0.12, 'resistance = "5 ohm"'), capacitor("C", "a", "ground", 100e-6)
+        drive(50.0, 300.0),
+        inductor("L", "in", "a", 0.12, 'resistance = "5 ohm"'),
+        capacitor("C", "a", "ground", 100e-6),
     )
     assert digits(found["E.current_rms"], "38.91")
     assert digits(found.drives["E"].phase_degrees, "49.57")
