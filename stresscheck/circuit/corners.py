@@ -26,8 +26,8 @@ BASE = 0.41
 """Where along each entry the tableau is factored: off the middle, where a lossless resonance often sits."""
 LEAST_PIVOT = 1e-8
 """Smallest pivot against its terms: below it rounding could exceed the margin that bounds carry (1e-6)."""
-MOST_CORNERS = 1 << 14
-"""Corners of one box beyond which no bound is tried: a second of work and a hundred megabytes a box."""
+MOST_NUMBERS = 20_000_000
+"""Numerators of one box beyond which no bound is tried: seconds of work and 320 MB."""
 MOST_DEGREE = 16
 """Highest degree in omega: Bernstein values lose some 2^degree of precision."""
 

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from stresscheck.arrays import Complexes, Flags, Floats, Indices
-from stresscheck.circuit.corners import MOST_CORNERS, MOST_DEGREE, Corners, Pieces, corner_count, corners
+from stresscheck.circuit.corners import MOST_DEGREE, MOST_NUMBERS, Corners, Pieces, corner_count, corners
 from stresscheck.circuit.entries import Entry, entries
 from stresscheck.circuit.influence import influence
 from stresscheck.circuit.laws import TAU, CapacitorLaw, ResistorLaw
@@ -149,9 +149,10 @@ def _groups(
     groups = []
     for pattern, rows in patterns.items():
         mine = tuple(found[n] for n, flag in zip(moving, pattern, strict=True) if flag)
-        if corner_count(mine, pieces.count) > MOST_CORNERS or pieces.count > MOST_DEGREE:
-            continue
         ports = tuple(e.places[0][0] for e in mine if e.degree == 1 and np.any(e.low.imag != e.high.imag))
+        numbers = corner_count(mine, pieces.count) * len(rows) * (len(line.sources) + len(ports))
+        if numbers > MOST_NUMBERS or pieces.count > MOST_DEGREE:
+            continue
         port_rhs = np.zeros((form.size, len(ports)))
         for column, branch in enumerate(ports):
             port_rhs[form.row(branch), column] = 1.0

@@ -282,4 +282,4 @@ def _floor(problem: Problem, value: Floats) -> Floats:
 def _batch(problem: Problem) -> int:
     """Boxes split together, by how many corners a box has."""
     varying = len(problem.box.varying)
-    return int(np.clip(BATCH_CORNERS // 2 ** (varying + 1), 2, 64))
+    return int(np.clip(BATCH_CORNERS // 2 ** (varying + 1), 1, 64))

@@ -19,7 +19,12 @@ sys.path.insert(0, str(Path(__file__).resolve().parents[1] / "circuit"))
 import numpy as np
 from random_boxes import random_points, random_problem
 
-from stresscheck.findings.worst import Problem, worst_case
+from stresscheck.circuit.axes import Axes, Axis
+from stresscheck.circuit.curves import LossCurve
+from stresscheck.circuit.laws import TAU, CapacitorLaw, InductorLaw, ResistorLaw
+from stresscheck.circuit.network import Branch, Line, Network, Source
+from stresscheck.findings.worst import Asked, Problem, worst_case
+from stresscheck.stress.stresses import PartNotes
 
 GAP = 0.05
 
@@ -47,17 +52,52 @@ def by_q() -> None:
         print(f"  {shape:8} 3 varying: time at Q 10,000 over Q 50: {times[10_000.0] / times[50.0]:.2f}")
 
 
+def ladder(varying: int, band: float) -> Problem:
+    """Six L-C sections between 50 ohm, Q 200, of whose twelve reactive values the first so many vary by 5 %."""
+    branches, axes, notes = [], [], {}
+    hertz, none = 1e5, LossCurve("", None, np.zeros(1))
+    for n in range(6):
+        for kind, first, second in (("inductor", n, n + 1), ("capacitor", n + 1, -1)):
+            name = f"{kind[0].upper()}{n}"
+            coil = kind == "inductor"
+            value = 80e-6 if coil else 30e-9
+            law = InductorLaw(none, TAU * hertz / 200.0) if coil else CapacitorLaw(none, none)
+            tolerance = 0.05 if len(axes) < varying else 0.0
+            axes.append(Axis(name, value * (1 - tolerance), value, value * (1 + tolerance)))
+            branches.append(Branch(name, "main", first, second, law, len(axes) - 1))
+            notes[name] = PartNotes(kind)
+    axes += [Axis("level", 1.0, 1.0, 1.0), Axis("f", hertz * (1 - band), hertz, hertz * (1 + band))]
+    branches.append(Branch("load", "leakage", 6, -1, ResistorLaw(), None, 50.0))
+    branches.append(Branch("D", "source", 0, -1, ResistorLaw(), None, 50.0, drive=0))
+    source = Source("D", "voltage", "peak", 0, -1, len(branches) - 1, 50.0, 12, 1.0, 0.0, 0, 0.0)
+    network = Network(
+        Axes(tuple(axes)), tuple(f"n{i}" for i in range(7)), tuple(branches), (), (), (source,), (Line(13, (0,), 0),)
+    )  # fmt: skip
+    quantity = {"inductor": "current_peak", "capacitor": "voltage_peak"}
+    return Problem(network, notes, [Asked(name, quantity[note.kind]) for name, note in notes.items()])
+
+
 def by_varying() -> None:
-    """Growth with the number of varying values, over a series tank's time."""
-    base = min(prove(random_problem(0, varying=2, q=200.0)[0])[1] for _ in range(3))
-    for count in range(2, 7):
-        rows = [prove(random_problem(seed, varying=count, q=200.0)[0]) for seed in (3, 8, 13, 4, 9, 14)]
-        times = [seconds for _, seconds in rows]
-        boxes = [result.bounds.boxes for result, _ in rows]
-        closed = np.mean([share_closed(result) for result, _ in rows])
+    """Growth with the number of varying values: a ladder of twelve reactive values, one function of each."""
+    for band in (0.0, 0.02):
+        base = None
+        for count in (2, 4, 6, 8, 10, 12):
+            result, seconds = prove(ladder(count, band), budget=30.0)
+            base = base or seconds
+            print(
+                f"  {count:2} varying, band {100 * band:.0f} %: {seconds / base:6.1f} x the time of two, "
+                f"{result.bounds.boxes} boxes, closed {100 * share_closed(result):.0f} %"
+            )
+
+
+def coupled_pair() -> None:
+    """Coupled resonators, seven varying values, against a series tank of three."""
+    base = min(prove(random_problem(0, varying=3, q=200.0)[0])[1] for _ in range(3))
+    for seed in (4, 9, 14, 19):
+        result, seconds = prove(random_problem(seed, varying=7)[0])
         print(
-            f"  {count} varying: median time {np.median(times) / base:7.1f} x a series tank's, "
-            f"median boxes {int(np.median(boxes))}, closed {100 * closed:.0f} %"
+            f"  coupled pair {seed}: {seconds / base:6.1f} x a series tank's time ({seconds:.2f} s), "
+            f"{result.bounds.boxes} boxes, closed {100 * share_closed(result):.0f} %"
         )
 
 
@@ -127,6 +167,8 @@ def main() -> None:
     by_q()
     print("growth with varying values")
     by_varying()
+    print("seven varying values, coupled")
+    coupled_pair()
     print("against differential evolution")
     against_evolution()
     print("random boxes")
