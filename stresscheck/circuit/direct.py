@@ -25,11 +25,24 @@ MARGIN = 1e-6
 
 @dataclass(frozen=True, slots=True)
 class Direct:
-    """Sizes at omega = 0. `volt`, `ampere`: [points, branches]; `node`: [points, nodes]; NaN where undecided."""
+    """Sizes at omega = 0. `volt`, `ampere`: [points, branches]; `node`: [points, nodes]; NaN where undecided.
+
+    `terminal`: current at the terminals of each drive; `watt`: power that each sends into the circuit, negative where
+    it takes power in (over boxes: a bound of its size), [points, sources].
+    """
 
     volt: Floats
     ampere: Floats
     node: Floats
+    terminal: Floats
+    watt: Floats
+
+    @staticmethod
+    def nothing(network: Network, points: int) -> Direct:
+        """What drives without offset leave: zero everywhere."""
+        branch = np.zeros((points, len(network.branches)))
+        source = np.zeros((points, len(network.sources)))
+        return Direct(branch, branch, np.zeros((points, len(network.nodes))), source, source)
 
 
 def has_offset(network: Network) -> bool:
@@ -61,9 +74,8 @@ def direct(network: Network, points: Floats) -> Direct:
     NaN: voltages across capacitors (or gaps) between groups that no resistive path ties together, and currents of
     coils in loops without resistance.
     """
-    size = (len(points), len(network.branches))
     if not has_offset(network):
-        return Direct(np.zeros(size), np.zeros(size), np.zeros((len(points), len(network.nodes))))
+        return Direct.nothing(network, len(points))
     form = _direct_frame(network)
     matrix = np.repeat(form.fixed[None].astype(np.complex128), len(points), axis=0)
     position = {branch: n for n, branch in enumerate(form.branches)}
@@ -79,24 +91,18 @@ def direct(network: Network, points: Floats) -> Direct:
 
 def direct_bounds(network: Network, lows: Floats, highs: Floats) -> Direct:
     """Upper bounds of the sizes over boxes [lows, highs], each shape [boxes, axes]; infinite where none is found."""
-    size = (len(lows), len(network.branches))
     if not has_offset(network):
-        return Direct(np.zeros(size), np.zeros(size), np.zeros((len(lows), len(network.nodes))))
+        return Direct.nothing(network, len(lows))
     form = _direct_frame(network)
     rhs = excitation(form, tuple(range(len(network.sources))), direct=True).sum(axis=1, keepdims=True)
     spread = _difference_readings(network, form)
     entries = direct_entries(network, lows, highs)
     moving = tuple(entry for entry in entries if entry.varies)
     found = corners(form, entries, moving, rhs, spread, Pieces(np.zeros((len(lows), 1))), 0)
-    bound = corner_rule(np.abs(flat(found.numerator[..., 0], 1)), flat(found.denominator, 0))
+    numerator = flat(found.numerator[..., 0], 1) + flat(found.denominator, 0)[:, :, None] * _constants(network, form)
+    bound = corner_rule(np.abs(numerator), flat(found.denominator, 0))
     bound = np.repeat(bound, len(lows) // len(bound), axis=0) * (1.0 + MARGIN)
-    count = len(network.branches)
-    ampere = np.zeros(size)
-    ampere[:, list(form.branches)] = bound[:, : len(form.branches)]
-    rest = bound[:, len(form.branches) :]
-    volt, node = rest[:, :count].copy(), rest[:, count:].copy()
-    _blank(network, volt, node)
-    return Direct(volt, ampere, node)
+    return _sorted(network, form, bound)
 
 
 def _direct_frame(network: Network) -> Frame:
@@ -109,27 +115,58 @@ def _direct_frame(network: Network) -> Frame:
 
 
 def _difference_readings(network: Network, form: Frame) -> Floats:
-    """Outputs at DC: currents of carrying branches, voltages of all branches, node voltages."""
+    """Outputs at DC: currents of carrying branches, voltages of all branches, node voltages; then for each drive the
+    current that it sends out (without the constant part of a current drive) and the voltage across it."""
     count, total, nodes = len(form.branches), len(network.branches), len(network.nodes)
-    out = np.zeros((count + total + nodes, form.size))
+    start, drives = count + total + nodes, len(network.sources)
+    out = np.zeros((start + 2 * drives, form.size))
     for position in range(count):
         out[position, form.row(position)] = 1.0
     for index, branch in enumerate(network.branches):
-        for node, sign in ((branch.first, 1.0), (branch.second, -1.0)):
-            if node != GROUND:
-                out[count + index, node] += sign
-    out[count + total :, :nodes] = np.eye(nodes)
+        _across(out, count + index, branch.first, branch.second)
+    out[count + total : start, :nodes] = np.eye(nodes)
+    place = {index: position for position, index in enumerate(form.branches)}
+    for index, source in enumerate(network.sources):
+        own = source.branch if source.branch is not None else network.branch_of(source.name, "source")
+        if own is not None:
+            out[start + index, form.row(place[own])] = -1.0
+        _across(out, start + drives + index, source.first, source.second)
+    return out
+
+
+def _across(out: Floats, row: int, first: int, second: int) -> None:
+    for node, sign in ((first, 1.0), (second, -1.0)):
+        if node != GROUND:
+            out[row, node] += sign
+
+
+def _constants(network: Network, form: Frame) -> Floats:
+    """Constant part of each output: the direct current of current drives."""
+    start = len(form.branches) + len(network.branches) + len(network.nodes)
+    out = np.zeros(start + 2 * len(network.sources))
+    for index, source in enumerate(network.sources):
+        if source.branch is None:
+            out[start + index] = source.dc
     return out
 
 
 def _read(network: Network, form: Frame, x: Floats) -> Direct:
-    outputs = x @ _difference_readings(network, form).T
-    count, total = len(form.branches), len(network.branches)
-    ampere = np.zeros((len(x), total))
+    outputs = x @ _difference_readings(network, form).T + _constants(network, form)
+    found = _sorted(network, form, outputs)
+    return Direct(np.abs(found.volt), np.abs(found.ampere), np.abs(found.node), np.abs(found.terminal), found.watt)
+
+
+def _sorted(network: Network, form: Frame, outputs: Floats) -> Direct:
+    """Outputs in the order of `_difference_readings` as sizes of branches, nodes and drives."""
+    count, total, nodes = len(form.branches), len(network.branches), len(network.nodes)
+    ampere = np.zeros((len(outputs), total))
     ampere[:, list(form.branches)] = outputs[:, :count]
-    volt, node = outputs[:, count : count + total].copy(), outputs[:, count + total :].copy()
+    volt, node = outputs[:, count : count + total].copy(), outputs[:, count + total : count + total + nodes].copy()
     _blank(network, volt, node)
-    return Direct(np.abs(volt), np.abs(ampere), np.abs(node))
+    rest = outputs[:, count + total + nodes :]
+    terminal, across = rest[:, : len(network.sources)], rest[:, len(network.sources) :]
+    with np.errstate(invalid="ignore"):
+        return Direct(volt, ampere, node, terminal.copy(), np.where(terminal == 0.0, 0.0, terminal * across))
 
 
 def _blank(network: Network, volt: Floats, node: Floats) -> None:

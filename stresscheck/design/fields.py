@@ -14,6 +14,8 @@ from stresscheck.design.quantity import Curve, Quantity, Tolerance
 from stresscheck.units import UnitError, Wanted, parse
 
 Reader = Callable[[Any], Any]
+PATTERN = r"^ *[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]{1,3})? ?[^0-9 ]\S* *$"
+"""Form of a quantity for editors: a number, an optional space, a unit."""
 
 WANTED = {
     name: Wanted(what, unit, low, high, example, absolute)
@@ -93,7 +95,7 @@ def _schema(name: str) -> dict[str, Any]:
     wanted = WANTED[name]
     return {
         "type": "string",
-        "pattern": r"^\s*[+-]?[0-9.]+([eE][+-]?[0-9]+)? ?\S+$",
+        "pattern": PATTERN,
         "description": f"{wanted.what}, text with a unit, in {wanted.unit} or with a prefix",
         "examples": [wanted.example],
     }
@@ -104,9 +106,19 @@ def quantity(name: str) -> Any:
     return Annotated[Quantity, PlainValidator(_reads(name)), WithJsonSchema(_schema(name))]
 
 
+def _number_schema(low: float, high: float, what: str) -> dict[str, Any]:
+    """A number; text counts too, for figures written in percent."""
+    return {
+        "type": ["number", "string"],
+        "minimum": low,
+        "maximum": high,
+        "description": f"{what}, {low:g} to {high:g}",
+    }
+
+
 def number(low: float, high: float, what: str) -> Any:
     """Field type of a plain number."""
-    schema = {"type": "number", "minimum": low, "maximum": high, "description": what}
+    schema = _number_schema(low, high, what)
     return Annotated[Quantity, PlainValidator(lambda raw: read_number(raw, low, high, what)), WithJsonSchema(schema)]
 
 
@@ -134,7 +146,7 @@ def quantity_range(name: str) -> Any:
 
 def number_range(low: float, high: float, what: str) -> Any:
     """Field type of a plain number or a range of it."""
-    schema = {"type": "number", "minimum": low, "maximum": high, "description": what}
+    schema = _number_schema(low, high, what)
     return value_or_range(lambda raw: read_number(raw, low, high, what), schema)
 
 
@@ -160,9 +172,11 @@ def or_curve(read: Reader, schema: dict[str, Any], axes: tuple[str, ...]) -> Any
     def validate(raw: Any) -> Any:
         return read_curve(raw, read, axes) if isinstance(raw, dict) else read(raw)
 
+    point = {"type": "array", "minItems": 2, "maxItems": 2}
     curve = {
         "type": "object",
-        "properties": {"by": {"enum": list(axes)}, "points": {"type": "array", "minItems": 2}},
+        "description": "a curve: points of increasing frequency or temperature, each with its value",
+        "properties": {"by": {"enum": list(axes)}, "points": {"type": "array", "minItems": 2, "items": point}},
         "required": ["by", "points"],
         "additionalProperties": False,
     }
@@ -181,7 +195,7 @@ def loss(name: str) -> Any:
 
 def loss_factor() -> Any:
     """Field type of a loss factor: one number, or a curve over frequency."""
-    schema = {"type": "number", "minimum": 0, "maximum": 1, "description": "tan delta"}
+    schema = _number_schema(0.0, 1.0, "a loss factor, tan delta")
     return or_curve(lambda raw: read_number(raw, 0.0, 1.0, "a loss factor"), schema, ("frequency",))
 
 
@@ -215,7 +229,7 @@ def tolerance(name: str | None) -> Any:
             raise fail("out-of-range", expected, "write a size below 100 %, without a sign")
         return Tolerance(-size, size, absolute, raw)
 
-    text = {"type": "string", "examples": ["5 %"]}
+    text = {"type": "string", "pattern": PATTERN, "description": "a tolerance", "examples": ["5 %", "3 pF"]}
     schema = {"anyOf": [text, {"type": "array", "items": text, "minItems": 2, "maxItems": 2}]}
     return Annotated[Tolerance, PlainValidator(validate), WithJsonSchema(schema)]
 
@@ -292,7 +306,8 @@ def node_pair() -> Any:
             raise fail("bad-topology", expected, "a part joins two different nodes")
         return first, second
 
-    schema = {"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2}
+    item = {"type": "string", "pattern": "^[A-Za-z0-9_-]{1,40}$"}
+    schema = {"type": "array", "items": item, "minItems": 2, "maxItems": 2, "description": "two different nodes"}
     return Annotated[tuple[str, str], PlainValidator(validate), WithJsonSchema(schema)]
 
 

@@ -85,7 +85,7 @@ class _Loader:
 
     def _mark(self, design: Design, sha256: str) -> None:
         design._file, design._folder, design._sha256 = self.file, self.folder, sha256
-        design._line_of = self.lines.of
+        design._lines = self.lines
 
     def _names(self) -> None:
         """Names that can be printed, unique across kinds; no empty tables."""
@@ -113,8 +113,9 @@ class _Loader:
 
     def _unique(self, kind: str, name: str, seen: dict[str, str]) -> None:
         if name in seen:
-            found = f"{show(name)}, the name of a {seen[name]} too"
-            self.say("duplicate-name", (kind, name), found, "names unique across kinds", "rename one of the two")
+            both = sorted((seen[name], kind), key=lambda k: self.lines.of((k, name)) or 0)
+            found = f"{show(name)}, which is in the table {both[0]} already"
+            self.say("duplicate-name", (both[1], name), found, "names unique across kinds", "rename one of the two")
         seen.setdefault(name, kind)
 
     def _with_parts(self, raw: dict[str, Any]) -> dict[str, Any]:

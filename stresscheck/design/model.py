@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from pathlib import Path
 from types import MappingProxyType
 from typing import Annotated, Any
@@ -22,6 +22,7 @@ from stresscheck.design.parts import (
     Table,
     Transformer,
 )
+from stresscheck.design.positions import Lines
 from stresscheck.design.quantity import Quantity, Span, span_of
 
 LEVEL = '"12 V" or "2 A"'
@@ -181,7 +182,7 @@ class Design(Table):
     _opened: frozenset[str] = PrivateAttr(default=frozenset())
     _shorted: frozenset[str] = PrivateAttr(default=frozenset())
     _in_state: Mapping[str, Design] = PrivateAttr(default_factory=dict)
-    _line_of: Callable[[tuple[str, ...]], int | None] = PrivateAttr(default=lambda path: None)
+    _lines: Lines | None = PrivateAttr(default=None)
 
     @property
     def file(self) -> str:
@@ -213,7 +214,7 @@ class Design(Table):
 
         `line_of("capacitor", "Ctank", "value")`. The positions are looked up at the first call.
         """
-        return self._line_of(path)
+        return None if self._lines is None else self._lines.of(path)
 
     @property
     def states(self) -> tuple[str, ...]:

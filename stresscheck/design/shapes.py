@@ -12,7 +12,7 @@ from typing import Annotated, Any
 from pydantic import PlainValidator, WithJsonSchema
 from pydantic_core import PydanticCustomError
 
-from stresscheck.design.fields import WANTED, fail, is_name, read_quantity
+from stresscheck.design.fields import PATTERN, WANTED, fail, is_name, read_quantity
 from stresscheck.design.quantity import Level
 
 _FINDING = re.compile(r"([A-Za-z0-9_-]{1,40})\.([a-z_]{1,40})@([A-Za-z0-9_-]{1,40})(/[a-z-]{1,20})?")
@@ -40,7 +40,7 @@ def level(volt: str, ampere: str, example: str) -> Any:
 
     schema = {
         "type": "string",
-        "pattern": r"^\s*[+-]?[0-9.]+([eE][+-]?[0-9]+)? ?\S+$",
+        "pattern": PATTERN,
         "description": "a level, text with a unit: in V for a voltage drive, in A for a current drive",
         "examples": ["12 V", "2 A"],
     }

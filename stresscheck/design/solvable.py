@@ -157,9 +157,7 @@ def _direct_current(design: Design) -> list[PROBLEM]:
     alone charges them without end.
     """
     offsets = {name: d for name, d in design.drive.items() if d.offset is not None and float(d.offset) != 0.0}
-    shorts = [
-        p.between for p in design.inductor.values() if p.resistance is None and p.q is None and p.winding is None
-    ]
+    shorts = [p.between for p in design.inductor.values() if p.resistance is None and p.q is None and p.winding is None]
     ideal = [d.between for d in design.drive.values() if d.source == "voltage" and d.source_resistance is None]
     leaky = [c.between for c in design.capacitor.values() if c.leakage_resistance is not None]
     paths = [p.between for kind in ("inductor", "resistor") for p in getattr(design, kind).values()]

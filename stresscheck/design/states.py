@@ -96,9 +96,9 @@ def _unknown(base: Mapping[str, Any], parts: list[str], path: str) -> PROBLEM | 
         keys = [k for k in known_keys(Design, (parts[0], parts[1], *parts[2:-1])) if k not in FIXED]
         if parts[2] in FIXED:
             return "unknown-key", key, show(path), "a value, not the wiring", "write another design file"
-        if parts[-1] not in keys or (len(parts) == 3 and known_keys(Design, tuple(parts))):
+        if parts[-1] not in keys:
             near = nearest(parts[-1], keys)
-            repair = f"did you mean {near}?" if near and near != parts[-1] else "name one key and its new value"
+            repair = f"did you mean {near}?" if near else "name one key and its new value"
             return "unknown-key", key, show(path), "one of " + (", ".join(keys) or "the keys of the part"), repair
     return None
 

@@ -73,9 +73,7 @@ def _drives_at(network: Network, lines: list[Phasors], still: Direct) -> tuple[t
         volt, ampere = terminal_phasors(network, index, seen)
         terminal.append(np.abs(ampere))
         power = 0.5 * (volt * ampere.conj()).real
-        if source.branch is not None and source.dc != 0.0:
-            power = power + still.volt[:, source.branch] * still.ampere[:, source.branch]
-        watt.append(power)
+        watt.append(power + still.watt[:, index])
     return tuple(terminal), tuple(watt)
 
 
@@ -134,9 +132,6 @@ def _watt_bound(
     source = network.sources[index]
     line = source.line
     across = source.branch if source.branch is not None else network.branch_of(source.name, "source")
-    dc = np.zeros(volt.shape[1])
-    if source.branch is not None and source.dc != 0.0:
-        dc = still.volt[:, source.branch] * still.ampere[:, source.branch]
     best = np.full(volt.shape[1], np.inf)
     if across is not None:
         best = 0.5 * volt[line][:, across] * terminal
@@ -144,4 +139,4 @@ def _watt_bound(
         lossy = [n for n, branch in enumerate(network.branches) if branch.role != "source"]
         losses = 0.5 * (root_watt[line][:, lossy] ** 2).sum(axis=1)
         best = np.minimum(best, losses)
-    return np.asarray(best + dc)
+    return np.asarray(best + still.watt[:, index])

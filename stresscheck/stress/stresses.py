@@ -87,10 +87,9 @@ def _drive(network: Network, name: str, places: dict[str, int], sizes: Sizes) ->
     source = network.sources[index]
     lines, points = sizes.ampere.shape[0], sizes.ampere.shape[1]
     ampere = np.zeros((lines, points))
-    dc = np.full(points, abs(source.dc))
+    dc = sizes.direct.terminal[:, index]
     if source.branch is not None:
         ampere = sizes.ampere[:, :, source.branch].copy()
-        dc = sizes.direct.ampere[:, source.branch]
     elif "source" in places:
         ampere = sizes.ampere[:, :, places["source"]].copy()
     ampere[source.line] = sizes.terminal[index]

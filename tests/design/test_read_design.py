@@ -7,9 +7,9 @@ import pickle
 from pathlib import Path
 
 import pytest
+from bench_design import HEAD, TANK, WHOLE, drive, part, transformer
 from pydantic import ValidationError
 
-from bench_design import HEAD, TANK, WHOLE, drive, part, transformer
 from stresscheck.design.load import load_design, read_design
 from stresscheck.design.model import Drive
 from stresscheck.design.parts import Capacitor, Coupling, Inductor
@@ -18,7 +18,11 @@ from stresscheck.design.quantity import Curve, Quantity, Span
 
 def test_whole_example_reads_every_figure_in_si() -> None:
     design = read_design(WHOLE, "tank.toml")
-    assert (design.title, design.revision, design.derating) == ("Bench induction heater, series tank", "B", "src-severe")
+    assert (design.title, design.revision, design.derating) == (
+        "Bench induction heater, series tank",
+        "B",
+        "src-severe",
+    )
     assert design.site.ambient_span() == Span(283.15, 298.15, 313.15)
     assert (design.site.altitude, design.site.pollution_degree, design.site.reachable) == (300.0, 2, ("in",))
     bridge = design.drive["bridge"]
@@ -170,7 +174,9 @@ def test_state_changed_key_replaces_its_alternatives(change: str, gone: str, the
 
 def test_state_new_value_drops_the_nominal_of_a_range() -> None:
     text = TANK.replace('value = "1 uF"', 'value = ["1 uF", "9 uF"]\nnominal = "2 uF"')
-    assert read_design(text + _state('"capacitor.C.value" = "5 uF"')).in_state("s").capacitor["C"].span().nominal == 5e-6
+    assert (
+        read_design(text + _state('"capacitor.C.value" = "5 uF"')).in_state("s").capacitor["C"].span().nominal == 5e-6
+    )
 
 
 def test_state_frequency_applies_to_every_drive() -> None:

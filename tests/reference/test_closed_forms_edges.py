@@ -64,7 +64,9 @@ def test_rating_barely_above_the_worst_is_never_called_above(q: float) -> None:
 def test_t1_coil_voltage_peaks_above_the_resonance(q: float) -> None:
     """T1: V_L peaks at f0 / sqrt(1 - 1/(2 Q^2)) with Q V / sqrt(1 - 1/(4 Q^2))."""
     band = f'["{0.98 * HERTZ!r} Hz", "{1.02 * HERTZ!r} Hz"]'
-    across = f'[drive.E]\nbetween = ["in", "ground"]\npeak = "1 V"\nfrequency = {band}\nrating = {{ current_peak = "1 MA" }}'
+    across = (
+        f'[drive.E]\nbetween = ["in", "ground"]\npeak = "1 V"\nfrequency = {band}\nrating = {{ current_peak = "1 MA" }}'
+    )
     tables = [across, resistor("R", "in", "a", X0 / q), inductor("L", "a", "b", HENRY)]
     finding = _found(*tables, _capacitor(FARAD, 1e-12, 1e7))["L.voltage_peak"]
     top = 1.0 / math.sqrt(1.0 - 1.0 / (2.0 * q * q))
@@ -83,7 +85,7 @@ def test_t2_check_row_corners_hide_the_resonance() -> None:
     assert finding.nominal == pytest.approx(9.7, abs=0.05)
     assert finding.proof is not None
     assert finding.proof.corners == pytest.approx(23.1, abs=0.05)
-    # Inside the box: smallest C, L tuned to it. The round 100 of the table is this figure at 1/(wC) = X0.
+    # Smallest C, L tuned to it: Q X_C/X0 = 100.25, which the table rounds to 100.
     assert finding.worst == pytest.approx(100.0 / (1.05 * 0.95), rel=1e-6)
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from decimal import Decimal
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from stresscheck.units import TABLE, Wanted, parse, render
@@ -32,6 +32,7 @@ def _read(text: str) -> Decimal:
     return Decimal(number) * TABLE[unit][0]
 
 
+@settings(deadline=None)
 @given(st.floats(min_value=1e-12, max_value=1e11), st.integers(2, 6))
 def test_render_rounded_up_is_never_below_and_down_never_above(value: float, digits: int) -> None:
     exact = Decimal(repr(value))
@@ -40,11 +41,13 @@ def test_render_rounded_up_is_never_below_and_down_never_above(value: float, dig
     assert up - down <= exact * Decimal(10) ** (1 - digits)
 
 
+@settings(deadline=None)
 @given(st.floats(min_value=1e-12, max_value=1e11))
 def test_render_shows_one_to_three_digits_before_the_point(value: float) -> None:
     assert 1 <= abs(Decimal(render(value, "V").split(" ")[0])) < 1000
 
 
+@settings(deadline=None)
 @given(st.floats(min_value=1e-10, max_value=1e9))
 def test_render_text_reads_back_within_its_digits(value: float) -> None:
     assert parse(render(value, "V"), Wanted("x", "V", 0, 1e12, "1 V")) == pytest.approx(value, rel=6e-4)

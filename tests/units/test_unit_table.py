@@ -55,6 +55,7 @@ def test_parse_ohm_signs_read_as_ohm(sign: str) -> None:
     assert parse(f"4.7 k{sign}", wanted) == 4700.0
 
 
+@settings(deadline=None)
 @given(st.decimals(min_value="0.001", max_value="9999", places=3), st.sampled_from(["p", "n", "u", "m", ""]))
 def test_parse_any_decimal_is_correctly_rounded(number: object, prefix: str) -> None:
     exact = Fraction(str(number)) * Fraction(10) ** {"p": -12, "n": -9, "u": -6, "m": -3, "": 0}[prefix]
@@ -129,7 +130,7 @@ def test_dimension_of_units_with_hidden_factors_is_unknown(name: str) -> None:
         dimension_of(name)
 
 
-@settings(max_examples=400)
+@settings(max_examples=400, deadline=None)
 @given(st.text(max_size=60))
 def test_parse_random_text_reads_a_finite_figure_or_raises(text: str) -> None:
     try:
@@ -139,7 +140,7 @@ def test_parse_random_text_reads_a_finite_figure_or_raises(text: str) -> None:
     assert math.isfinite(value)
 
 
-@settings(max_examples=400)
+@settings(max_examples=400, deadline=None)
 @given(
     st.from_regex(
         r"[+-]?[0-9]{1,4}(\.[0-9]{1,3})?(e[+-]?[0-9]{1,3})? ?[A-Za-z%]{0,6}([*/][A-Za-z]{1,3})?", fullmatch=True
