@@ -18,6 +18,7 @@ from stresscheck.findings.checks import Check, checks_of, part_notes
 from stresscheck.findings.explain import carriers_of, reason_for, steps_for
 from stresscheck.findings.finding import Finding, Place, Proof
 from stresscheck.findings.judge import judge
+from stresscheck.findings.self_resonance import remark
 from stresscheck.findings.worst import Asked, Limiting, Problem, Worst, worst_case
 from stresscheck.limits.limit import Limit
 from stresscheck.limits.policy import Policy
@@ -227,8 +228,14 @@ def _finding(
         rating_source="" if limit is None else limit.rating_source,
         derating_source="" if limit is None else limit.derating_source,
         why=result.why, ratio_bound=bound_use, proof=proof, reason="" if dead else reason_for(network, check, point),
-        remarks=() if dead else carriers_of(network, point),
+        remarks=_remarks(design, network, check, point) if not dead else (),
     )  # fmt: skip
+
+
+def _remarks(design: Design, network: Network, check: Check, point: Floats) -> tuple[str, ...]:
+    """Which parts carry the resonance, and a word where a part is driven near its own."""
+    near = remark(design, check.kind, check.part, design.part(check.part))
+    return carriers_of(network, point) + ((near,) if near else ())
 
 
 def _bound_use(worst: Worst, plan: _Plan, index: int, use: int, column: int) -> float | None:

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
+from stresscheck.findings.self_resonance import refusal
 from stresscheck.limits.families import load_families
 from stresscheck.limits.part_limits import PartLimits, limits_for
 from stresscheck.limits.policy import Policy
@@ -133,6 +134,9 @@ def _is_class_2(part: Any) -> bool:
 
 def _obstacle(design: Design, kind: str, name: str, part: Any, quantity: str) -> str:
     """Why one stress can't be computed from what the file declares."""
+    near = refusal(design, kind, name, part)
+    if near:
+        return near
     heat = quantity in ("dissipation", "temperature")
     if kind == "capacitor" and _is_class_2(part):
         return f"{name} is a class-2 ceramic: its capacitance falls with voltage, so a linear solution doesn't hold"

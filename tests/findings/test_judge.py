@@ -140,6 +140,24 @@ def test_state_that_can_t_be_solved_is_not_checked_and_named() -> None:
     assert all(f.verdict == "not-checked" for f in record.findings if f.state == "capacitor-shorted")
 
 
+@pytest.mark.parametrize(
+    ("key", "verdict", "remarked"),
+    [('self_resonance = "2 MHz"', "within", False), ('self_resonance = "300 kHz"', "within", True),
+     ('self_resonance = "150 kHz"', "within", True), ('self_resonance = "120 kHz"', "not-checked", False)],
+)  # fmt: skip
+def test_coil_near_its_self_resonance_is_remarked_and_then_refused(key: str, verdict: str, remarked: bool) -> None:
+    text = (
+        starter_text()
+        .replace("q = 120 ", key + "\nq = 120 ")
+        .replace('voltage_peak = "1200 V"', 'voltage_peak = "90 kV"')
+    )
+    text = text.replace('current_rms = "8 A"', 'current_rms = "900 A"')
+    record = review(read_design(text), states=["normal"])
+    finding = next(f for f in record.findings if f.id == "L1.voltage_peak@normal")
+    assert finding.verdict == verdict
+    assert any("self-resonance" in r for r in finding.remarks) == remarked
+
+
 def test_losses_not_declared_leave_heat_not_checked() -> None:
     text = starter_text().replace("dissipation_factor = 0.0004\n", "")
     found = _verdicts(text)

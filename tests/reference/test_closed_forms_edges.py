@@ -50,14 +50,16 @@ def test_rating_above_the_bound_is_within_and_below_the_worst_is_above(q: float)
     assert _tuned_capacitor(q, 0.9999 * worst).verdict == "above-rating"
 
 
+@pytest.mark.parametrize(("above", "verdict"), [(3e-7, "unproved"), (1e-4, "within")])
 @pytest.mark.parametrize("q", [10.0, 100.0, 1e3, 1e4, 1e5])
-def test_rating_barely_above_the_worst_is_never_called_above(q: float) -> None:
-    """Between worst and bound the verdict rests on the bound: `within` if it reaches the rating, else `unproved`."""
+def test_rating_barely_above_the_worst_is_within_only_by_the_bound(q: float, above: float, verdict: str) -> None:
+    """Bounds carry a margin of 1e-6: a rating inside it isn't proved, one at 1.0001 of the worst is."""
     worst = math.sqrt(1.0 + q * q)
-    finding = _tuned_capacitor(q, 1.0001 * worst)
+    finding = _tuned_capacitor(q, (1.0 + above) * worst)
     assert finding.bound is not None
     assert finding.worst == pytest.approx(worst, rel=1e-9)
-    assert finding.verdict == ("within" if finding.bound <= 1.0001 * worst else "unproved")
+    assert (finding.bound <= (1.0 + above) * worst) == (verdict == "within")
+    assert finding.verdict == verdict
 
 
 @pytest.mark.parametrize("q", [10.0, 100.0, 1e3, 1e4, 1e5])
