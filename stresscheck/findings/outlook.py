@@ -33,7 +33,7 @@ class Resonance:
 
 @dataclass(frozen=True, slots=True)
 class DriveReport:
-    """What a drive delivers with nominal values in the middle of its band.
+    """What a drive delivers at its own frequency, nominal values in the middle of its band; DC isn't counted here.
 
     `phase_degrees`: by how much the current lags the voltage; `side`: "inductive" (current lags), "capacitive"
     (current leads), or "in phase"; powers: real is the mean, reactive and apparent are peak phasor products / 2.

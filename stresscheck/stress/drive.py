@@ -7,7 +7,8 @@ from stresscheck.stress.seen import peak, rms
 
 
 def drive_stress(ampere: Floats, dc_ampere: Floats, groups: tuple[int, ...], watt: Floats) -> dict[str, Floats]:
-    """current_peak and current_rms [A] of the terminals, real power [W] delivered behind its own resistance.
+    """current_peak and current_rms [A] of the terminals, size of the real power [W] that it delivers or
+    takes in, at its own frequency and DC, behind its own resistance.
 
     ampere: peak at each line, [lines, points]; dc_ampere, watt: [points]. Source: circuit theory.
     """

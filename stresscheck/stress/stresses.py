@@ -94,4 +94,4 @@ def _drive(network: Network, name: str, places: dict[str, int], sizes: Sizes) ->
         ampere = sizes.ampere[:, :, places["source"]].copy()
     ampere[source.line] = sizes.terminal[index]
     groups = tuple(line.group for line in network.lines)
-    return drive_stress(ampere, dc, groups, sizes.watt[index])
+    return drive_stress(ampere, dc, groups, np.abs(sizes.watt[index]))

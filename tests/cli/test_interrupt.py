@@ -66,7 +66,7 @@ def test_interrupt_while_searching_ends_it_and_writes_the_report(tmp_path: Path)
 
 
 def test_review_interrupted_at_once_passes_nothing_unproved() -> None:
-    tight = TEXT.replace('voltage_dc = "1 kV"', 'voltage_dc = "20 V"')
+    tight = TEXT.replace('voltage_dc = "1 kV"', 'voltage_dc = "9.1 V"')
     record = review(read_design(tight), interrupted=lambda: True)
     assert record.verdict == "unanswered"
     unproved = [f for f in record.findings if f.verdict == "unproved"]

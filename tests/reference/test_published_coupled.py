@@ -1,4 +1,4 @@
-"""Coupled coils, several frequencies and sharing in published examples (O31 to O37, O51 to O57, O69 to O72).
+"""Coupled coils, several frequencies and sharing in published examples (O31 to O37, O51, O54 to O56, O70).
 
 LEC Lessons In Electric Circuits; BIRD Electrical Circuit Theory and Technology; Boylestad, Introductory Circuit Analysis.
 Harmonics of a waveform are given as several sine drives in series; their peaks then add, RMS as root of squares.
