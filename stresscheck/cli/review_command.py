@@ -49,7 +49,7 @@ def review(
     from stresscheck.cli.output import write
 
     options = _options(form, gap, budget, today)
-    designs = _load(files)
+    designs = _load(files, derating)
     stop = _Interrupt()
     reviews = [
         _one(design, derating, state, options, stop.asked, f"{design.file}: " if len(designs) > 1 else "")
@@ -103,16 +103,19 @@ def _options(form: str, gap: str, budget: str, today: str | None) -> dict[str, A
     return found
 
 
-def _load(files: list[Path]) -> list[Design]:
-    """All designs, or every problem of all files."""
+def _load(files: list[Path], derating: str | None) -> list[Design]:
+    """All designs, or every problem of all files and of the policies that they name."""
     from stresscheck.design.load import load_design
     from stresscheck.errors import InputError
+    from stresscheck.limits.policy import load_policy
 
     designs: list[Design] = []
     problems: list[Problem] = []
     for file in files:
         try:
-            designs.append(load_design(file))
+            design = load_design(file)
+            load_policy(derating or design.derating, design.folder)
+            designs.append(design)
         except InputError as error:
             problems.extend(error.problems)
     if problems:
