@@ -11,16 +11,13 @@ from dataclasses import dataclass
 import numpy as np
 
 from stresscheck.arrays import Floats
-from stresscheck.circuit.corner_rule import corner_rule
+from stresscheck.circuit.corner_rule import MARGIN, corner_rule
 from stresscheck.circuit.corners import Pieces, corners, flat
 from stresscheck.circuit.elimination import solve_batch
 from stresscheck.circuit.entries import direct_entries
 from stresscheck.circuit.network import GROUND, Network
 from stresscheck.circuit.tableau import Frame, excitation, frame
 from stresscheck.errors import CheckError
-
-MARGIN = 1e-6
-"""Relative margin of bounds for rounding."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from stresscheck.arrays import Complexes, Flags, Floats, Indices
+from stresscheck.circuit.corner_rule import MARGIN
 from stresscheck.circuit.corners import MOST_DEGREE, MOST_NUMBERS, Corners, Pieces, corner_count, corners
 from stresscheck.circuit.entries import Entry, entries
 from stresscheck.circuit.influence import influence
@@ -22,9 +23,6 @@ from stresscheck.circuit.rules import (
     tuned_bound,
 )
 from stresscheck.circuit.tableau import all_branches, excitation, frame, readings
-
-MARGIN = 1e-6
-"""Relative margin that every bound carries for rounding (tried on random networks: 6e-8 seen)."""
 
 
 @dataclass(frozen=True, slots=True)

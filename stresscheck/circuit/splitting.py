@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from stresscheck.arrays import Complexes, Floats, Indices
-from stresscheck.circuit.corner_rule import corner_rule
+from stresscheck.circuit.corner_rule import angle_span, corner_rule
 from stresscheck.circuit.corners import flat
 from stresscheck.circuit.enclosure import LineBounds, OutputGroup
 from stresscheck.circuit.entries import Entry
@@ -59,7 +59,7 @@ def _split_group(
     for axis in axes:
         halves = [_half(network, line, moving, numerator, below, axis, upper) for upper in (False, True)]
         bound.append(np.maximum(*[_quick(n, d) for n, d in halves]))
-        span.append(np.maximum(*[_span(flat(d, 0)) for _, d in halves]))
+        span.append(np.maximum(*[angle_span(flat(d, 0)) for _, d in halves]))
     by_bound, by_span = np.stack(bound, axis=1), np.stack(span, axis=1)
     columns = np.array(axes, dtype=np.intp)
     finite = np.isfinite(by_bound).any(axis=1)
@@ -112,10 +112,3 @@ def _halved(values: Complexes, dimension: int, upper: bool) -> Complexes:
         last.insert(0, level[-1])
     half = last if upper else first
     return np.moveaxis(np.stack(half), 0, dimension)
-
-
-def _span(denominator: Complexes) -> Floats:
-    """Angle that the denominator's corners span [rad]: over half a turn no bound is found."""
-    angle = np.sort(np.angle(denominator), axis=1)
-    following = np.concatenate([angle[:, 1:], angle[:, :1] + 2.0 * np.pi], axis=1)
-    return np.asarray(2.0 * np.pi - (following - angle).max(axis=1))
