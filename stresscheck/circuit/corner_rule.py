@@ -112,7 +112,7 @@ def angle_span(denominator: Complexes) -> Floats:
 
 def _widest_gap(denominator: Complexes) -> tuple[Floats, Floats]:
     """Widest gap between neighbouring directions, and the direction it ends at, [boxes] each."""
-    angle = np.sort(np.angle(denominator), axis=1)
+    angle = np.sort(np.angle(denominator).astype(np.float64), axis=1)
     following = np.concatenate([angle[:, 1:], angle[:, :1] + 2.0 * np.pi], axis=1)
     gap = following - angle
     place = gap.argmax(axis=1)[:, None]
