@@ -18,7 +18,7 @@ What is offered decides how exactly a peak is met: stationary values of the func
 
 KEPT = 4
 """Starts kept per function."""
-SWEEPS = 10
+SWEEPS = 40
 SETTLED = 1e-11
 """A sweep that gains less than this, relative, ends a climb."""
 STRIDES = 0.5 * 2.0 ** np.arange(9)
@@ -52,18 +52,20 @@ def climb(
     target = np.repeat(np.arange(values.shape[1]), best.shape[1])
     points = starts[best.reshape(-1)].copy()
     height = values[best.reshape(-1), target]
+    going = np.arange(len(points))
     for sweep in range(SWEEPS):
-        before, left = height.copy(), points
+        here, high, functions = points[going], height[going], target[going]
+        before, left = high, here
         for axis in box.varying:
             if stop():
-                return _collect(points, height, target, values.shape[1])
-            points, height = _move(box, evaluate, candidates, points, target, height, axis)
-        points, height = _stride(box, evaluate, left, points, target, height)
-        gain = height - before
-        moving = gain > SETTLED * np.abs(height)
+                break
+            here, high = _move(box, evaluate, candidates, here, functions, high, axis)
+        here, high = _stride(box, evaluate, left, here, functions, high)
+        points[going], height[going] = here, high
+        going = going[high - before > SETTLED * np.abs(high)]
         if sweep == 1:
-            points, height, target = _leaders(points, height, target)
-        if not moving.any():
+            going = np.intersect1d(going, _leaders(height, target))
+        if not going.size or stop():
             break
     return _collect(points, height, target, values.shape[1])
 
@@ -158,15 +160,14 @@ def _vertex(tries: Floats, heights: Floats) -> Floats:
     return np.where(np.isfinite(top), top, x1)
 
 
-def _leaders(points: Floats, height: Floats, target: Indices) -> tuple[Floats, Floats, Indices]:
+def _leaders(height: Floats, target: Indices) -> Indices:
     """The two highest climbers of each function; the others have shown where they lead."""
     keep: list[int] = []
     for function in np.unique(target):
         members = np.flatnonzero(target == function)
         order = members[np.argsort(-height[members], kind="stable")]
         keep.extend(int(i) for i in order[:2])
-    chosen = np.array(keep, dtype=np.intp)
-    return points[chosen], height[chosen], target[chosen]
+    return np.array(sorted(keep), dtype=np.intp)
 
 
 def _collect(points: Floats, height: Floats, target: Indices, functions: int) -> Peaks:
