@@ -19,7 +19,9 @@ What is offered decides how exactly a peak is met: stationary values of the func
 KEPT = 4
 """Starts kept per function."""
 SWEEPS = 40
-SETTLED = 1e-11
+LEADERS = {1: 2, 5: 1}
+"""After these sweeps only so many climbers of each function go on: two, and for slow ridges the best alone."""
+SETTLED = 1e-10
 """A sweep that gains less than this, relative, ends a climb."""
 STRIDES = 0.5 * 2.0 ** np.arange(9)
 """How far to go on along the way of a sweep, in parts of it."""
@@ -63,8 +65,8 @@ def climb(
         here, high = _stride(box, evaluate, left, here, functions, high)
         points[going], height[going] = here, high
         going = going[high - before > SETTLED * np.abs(high)]
-        if sweep == 1:
-            going = np.intersect1d(going, _leaders(height, target))
+        if sweep in LEADERS:
+            going = np.intersect1d(going, _leaders(height, target, LEADERS[sweep]))
         if not going.size or stop():
             break
     return _collect(points, height, target, values.shape[1])
@@ -160,13 +162,13 @@ def _vertex(tries: Floats, heights: Floats) -> Floats:
     return np.where(np.isfinite(top), top, x1)
 
 
-def _leaders(height: Floats, target: Indices) -> Indices:
-    """The two highest climbers of each function; the others have shown where they lead."""
+def _leaders(height: Floats, target: Indices, count: int) -> Indices:
+    """The highest climbers of each function; the others have shown where they lead."""
     keep: list[int] = []
     for function in np.unique(target):
         members = np.flatnonzero(target == function)
         order = members[np.argsort(-height[members], kind="stable")]
-        keep.extend(int(i) for i in order[:2])
+        keep.extend(int(i) for i in order[:count])
     return np.array(sorted(keep), dtype=np.intp)
 
 
