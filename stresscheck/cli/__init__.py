@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import errno
 import os
 import sys
 
@@ -19,30 +20,50 @@ def run() -> None:
 
 def guarded(arguments: list[str]) -> int:
     """Exit code of one call; whatever goes wrong inside ends as 70 with a word on where to report it."""
-    if arguments == ["--version"]:
-        from stresscheck import __version__
-
-        print(f"stresscheck {__version__}")
-        return EXIT_READY
     os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")  # small matrices: threads only cost start-up time
     for stream in (sys.stdout, sys.stderr):
         if hasattr(stream, "reconfigure"):
             stream.reconfigure(errors="backslashreplace")  # an ASCII terminal must not end the run
     try:
-        from stresscheck.cli.app import call
-
-        code = call(arguments)
+        code = _version() if arguments == ["--version"] else _called(arguments)
         sys.stdout.flush()
     except KeyboardInterrupt:
         print("interrupted", file=sys.stderr)
         return EXIT_INTERRUPTED
     except BrokenPipeError:
-        # What is still in the buffer can't go anywhere: keep the interpreter from complaining about it.
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        _forget_stdout()
         return EXIT_PIPE
+    except OSError as error:
+        if error.errno not in (errno.ENOSPC, errno.EDQUOT, errno.EIO):
+            return _internal(error)
+        print(f"standard output: {error.strerror}; nothing more was written", file=sys.stderr)
+        _forget_stdout()
+        return EXIT_UNUSABLE
     except Exception as error:
         return _internal(error)
+    if code == EXIT_PIPE:
+        _forget_stdout()
     return code
+
+
+def _version() -> int:
+    """Answered before anything else is imported."""
+    from stresscheck import __version__
+
+    print(f"stresscheck {__version__}")
+    return EXIT_READY
+
+
+def _called(arguments: list[str]) -> int:
+    from stresscheck.cli.app import call
+
+    return call(arguments)
+
+
+def _forget_stdout() -> None:
+    from stresscheck.cli.output import forget_stdout
+
+    forget_stdout()
 
 
 def _internal(error: Exception) -> int:

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import sys
+from collections.abc import Callable
+from typing import TYPE_CHECKING
 
 import typer
 
@@ -11,6 +13,9 @@ from stresscheck.cli.resonances_command import resonances
 from stresscheck.cli.review_command import review
 from stresscheck.cli.schema_command import schema
 from stresscheck.cli.start_command import start
+
+if TYPE_CHECKING:
+    from stresscheck.errors import InputError
 
 ABOUT = """Find and prove the worst voltage, current and heat of every part of a high-Q circuit.
 
@@ -24,8 +29,16 @@ Exit codes: 0 ready, 1 something is above its limit, 2 the input can't be used, 
 app = typer.Typer(
     name="stresscheck", help=ABOUT, no_args_is_help=True, rich_markup_mode=None, pretty_exceptions_enable=False
 )
-for command in (review, resonances, library, schema, start):
-    app.command()(command)
+COMMANDS: dict[str, tuple[Callable[..., None], str]] = {
+    "review": (review, "Review design files: is it ready, what is worst, why, where."),
+    "resonances": (resonances, "Show natural modes with Q, bandwidth and stored energy."),
+    "library": (library, "Show what ships: policies, parts, thresholds, families."),
+    "schema": (schema, "Print the JSON Schema of the design file, for editors."),
+    "start": (start, "Write a commented design file to begin with."),
+}
+"""Name → (what it calls, one line for the list of commands; longer ones would be cut at 80 columns)."""
+for name, (command, line) in COMMANDS.items():
+    app.command(name, short_help=line)(command)
 
 
 @app.callback()
@@ -45,28 +58,41 @@ main.__doc__ = ABOUT
 
 def call(arguments: list[str]) -> int:
     """Exit code of one call of the command."""
+    from stresscheck.cli import EXIT_INTERRUPTED, EXIT_PIPE, EXIT_UNUSABLE
     from stresscheck.errors import InputError
 
     try:
-        code = app(arguments, standalone_mode=True, prog_name="stresscheck")
-    except SystemExit as end:
-        return int(end.code) if isinstance(end.code, int) else 0
+        code = app(arguments, standalone_mode=False, prog_name="stresscheck")
     except InputError as error:
         tell(error)
-        return 2
+        return EXIT_UNUSABLE
+    except typer.Abort:
+        return EXIT_INTERRUPTED
+    except SystemExit as end:
+        # Completion ends that way with 0; a pipe closed by its reader with 1, which would read as a finding.
+        return EXIT_PIPE if end.code == 1 else int(end.code or 0)
+    except Exception as error:
+        # A misspelt command line knows how to show itself; anything else is an internal error.
+        show = getattr(error, "show", None)
+        if show is None:
+            raise
+        show()
+        return EXIT_UNUSABLE
     return int(code or 0)
 
 
-def tell(error: Exception) -> None:
-    """Every problem of an input on standard error, one block each."""
-    from stresscheck.errors import InputError
+def tell(error: InputError) -> None:
+    """Every problem of an input on standard error, one block each; what was read is shown without control characters.
 
-    assert isinstance(error, InputError)
+    Free text of a file ends up here before anything has vouched for it.
+    """
+    from stresscheck.report.plain_text import harmless
+
     count = len(error.problems)
     print(f"{count} problem{'s' if count != 1 else ''}; nothing was reviewed", file=sys.stderr)
     for problem in error.problems:
         place = problem.file if problem.line is None else f"{problem.file}:{problem.line}"
-        print(f"\n{place}  {problem.key}".rstrip(), file=sys.stderr)
-        print(f"  found     {problem.found}", file=sys.stderr)
-        print(f"  expected  {problem.expected}", file=sys.stderr)
-        print(f"  repair    {problem.repair}  [{problem.code}]", file=sys.stderr)
+        print(harmless(f"\n{place}  {problem.key}".rstrip(), keep="\n"), file=sys.stderr)
+        for name, text in (("found", problem.found), ("expected", problem.expected)):
+            print(harmless(f"  {name:<9} {text}"), file=sys.stderr)
+        print(harmless(f"  repair    {problem.repair}  [{problem.code}]"), file=sys.stderr)

@@ -9,11 +9,16 @@ import typer
 SHELVES = ("policies", "parts", "thresholds", "families")
 
 
+def complete_shelf(incomplete: str) -> list[str]:
+    """Shelves that begin so, for the completion of a shell."""
+    return [shelf for shelf in SHELVES if shelf.startswith(incomplete)]
+
+
 def library(
     shelf: Annotated[
-        str | None, typer.Argument(metavar="[SHELF]", help="policies, parts, thresholds or families.")
+        str | None, typer.Argument(metavar="SHELF", help=f"One of {', '.join(SHELVES)}.", autocompletion=complete_shelf)
     ] = None,
-    name: Annotated[str | None, typer.Argument(metavar="[NAME]", help="One entry, with all its figures.")] = None,
+    name: Annotated[str | None, typer.Argument(metavar="NAME", help="One entry, with all its figures.")] = None,
 ) -> None:
     """Show what ships with the program: derating policies, demonstration parts, thresholds of cautions, families.
 

@@ -5,7 +5,12 @@ from __future__ import annotations
 import os
 import shutil
 import sys
+from collections.abc import Sequence
 from pathlib import Path
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from stresscheck.errors import InputError
 
 PIPE_WIDTH = 80
 
@@ -17,22 +22,33 @@ def width() -> int:
     return max(40, min(160, shutil.get_terminal_size((PIPE_WIDTH, 24)).columns))
 
 
+def style(target: Path | None) -> tuple[int, bool]:
+    """Columns and whether tones are shown; a file gets neither the terminal's width nor its codes."""
+    return (width(), color()) if target is None else (PIPE_WIDTH, False)
+
+
 def color() -> bool:
     """True where the terminal shows tones and nobody asked for none (NO_COLOR)."""
     return sys.stdout.isatty() and not os.environ.get("NO_COLOR") and os.environ.get("TERM") != "dumb"
 
 
-def _to_stdout(text: str) -> None:
-    """Write and flush here: what the reader of a pipe no longer takes ends the run with its own exit code."""
-    from stresscheck.cli import EXIT_PIPE
+def forget_stdout() -> None:
+    """What is still in the buffer can't go anywhere: keep the interpreter from trying and complaining at its end."""
+    nowhere = os.open(os.devnull, os.O_WRONLY)
+    os.dup2(nowhere, 1)
+    os.close(nowhere)
 
-    try:
-        sys.stdout.write(text)
-        sys.stdout.flush()
-    except BrokenPipeError:
-        # What is still in the buffer can't go anywhere: keep the interpreter from complaining about it.
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-        raise SystemExit(EXIT_PIPE) from None
+
+def check_target(target: Path | None, inputs: Sequence[Path] = ()) -> None:
+    """Refuse, before any work is done, a file that can't be written or that is one of the inputs."""
+    if target is None:
+        return
+    if not target.name or target.is_dir():
+        raise _refused(target, "a folder", "a file", "name a file in it")
+    if not target.parent.is_dir():
+        raise _refused(target, f"no folder {target.parent}", "a folder that exists", "make the folder first")
+    if any(target.exists() and file.exists() and target.samefile(file) for file in inputs):
+        raise _refused(target, "the design file itself", "another file than the input", "choose another name")
 
 
 def write(text: str, target: Path | None) -> None:
@@ -40,19 +56,36 @@ def write(text: str, target: Path | None) -> None:
     if target is None:
         _to_stdout(text)
         return
+    check_target(target)
+    draft = target.with_name(f".{target.name}.{os.getpid()}.part")
+    # A pipe or a device is written into; put in its place, a finished file would end it for everybody.
+    into = target if target.exists() and not target.is_file() else draft
+    try:
+        into.write_text(text, encoding="utf-8", errors="backslashreplace", newline="\n")
+        if into is draft:
+            draft.replace(target.resolve())
+    except OSError as error:
+        if into is draft:
+            draft.unlink(missing_ok=True)
+        reason = error.strerror or "an error of the file system"
+        raise _refused(target, reason, "a file that can be written", "check the path") from None
+
+
+def _to_stdout(text: str) -> None:
+    """Write and flush here, so that what goes wrong with it has its own exit code."""
+    try:
+        sys.stdout.write(text)
+        sys.stdout.flush()
+    except BrokenPipeError:
+        raise
+    except OSError as error:
+        forget_stdout()
+        reason = error.strerror or "an error of the file system"
+        raise _refused(None, reason, "an output that takes what is written", "make room, or use --output") from None
+
+
+def _refused(target: Path | None, found: str, expected: str, repair: str) -> InputError:
     from stresscheck.errors import InputError, Problem
 
-    draft = target.with_name(f".{target.name}.{os.getpid()}.part")
-    try:
-        draft.write_text(text, encoding="utf-8")
-        draft.replace(target)
-    except OSError as error:
-        draft.unlink(missing_ok=True)
-        reason = error.strerror or "an error of the file system"
-        raise InputError(
-            [
-                Problem(
-                    "bad-command", str(target), None, "--output", reason, "a file that can be written", "check the path"
-                )
-            ]
-        ) from None
+    file, key = ("standard output", "") if target is None else (str(target), "--output")
+    return InputError([Problem("bad-command", file, None, key, found, expected, repair)])

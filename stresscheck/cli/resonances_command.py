@@ -10,7 +10,9 @@ import typer
 
 def resonances(
     file: Annotated[Path, typer.Argument(metavar="FILE", help="A design file (TOML).", show_default=False)],
-    state: Annotated[list[str] | None, typer.Option(help="Only this state; may be given several times.")] = None,
+    state: Annotated[
+        list[str] | None, typer.Option(metavar="STATE", help="Only this state; may be given several times.")
+    ] = None,
 ) -> None:
     """Show the natural modes of a design: frequency, Q, bandwidth, ring time, and which part stores the energy.
 

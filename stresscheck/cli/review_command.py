@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import datetime
-import signal
 import sys
 import time
 from collections.abc import Callable
@@ -11,6 +10,9 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Annotated, Any
 
 import typer
+
+from stresscheck.cli.interrupt import Interrupt
+from stresscheck.report.formats import FORMATS, render_all
 
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
@@ -20,18 +22,49 @@ if TYPE_CHECKING:
 EXIT_OF = {"ready": 0, "exceeded": 1, "unanswered": 3}
 WORST_FIRST = (1, 3, 0)
 """Of several files the first of these that any gave is the exit code; files that can't be used end with 2 at once."""
+FORMS = f"One of {', '.join(FORMATS)}."
+
+
+def complete_format(incomplete: str) -> list[str]:
+    """Formats that begin so, for the completion of a shell."""
+    return [name for name in FORMATS if name.startswith(incomplete)]
+
+
+def complete_policy(incomplete: str) -> list[str]:
+    """Names of shipped policies that begin so, for the completion of a shell."""
+    from stresscheck.shipped import ratings_dir
+
+    return [
+        file.stem for file in sorted((ratings_dir() / "policies").glob("*.toml")) if file.stem.startswith(incomplete)
+    ]
+
+
+Files = Annotated[list[Path], typer.Argument(metavar="FILE", help="Design files (TOML).", show_default=False)]
+Form = Annotated[str, typer.Option("--format", metavar="FORMAT", help=FORMS, autocompletion=complete_format)]
+Output = Annotated[Path | None, typer.Option(metavar="FILE", help="Write here instead of standard output.")]
+Derating = Annotated[
+    str | None,
+    typer.Option(metavar="POLICY", help="Another derating policy: a name or a file.", autocompletion=complete_policy),
+]
+States = Annotated[list[str] | None, typer.Option(metavar="STATE", help="Only this state; may be given several times.")]
+Gap = Annotated[str, typer.Option(metavar="PERCENT", help="How far a proved bound may stay above the worst found.")]
+Budget = Annotated[str, typer.Option(metavar="TIME", help="Time for searching and proving, per file.")]
+Explain = Annotated[str | None, typer.Option(metavar="ID", help="Show the working of one finding.")]
+Today = Annotated[
+    str | None, typer.Option(metavar="DATE", help="Date against which accepted findings expire; the day's without it.")
+]
 
 
 def review(
-    files: Annotated[list[Path], typer.Argument(metavar="FILE...", help="Design files (TOML).", show_default=False)],
-    form: Annotated[str, typer.Option("--format", help="terminal, json or markdown.")] = "terminal",
-    output: Annotated[Path | None, typer.Option(help="Write here instead of standard output.")] = None,
-    derating: Annotated[str | None, typer.Option(help="Another derating policy: a name or a file.")] = None,
-    state: Annotated[list[str] | None, typer.Option(help="Only this state; may be given several times.")] = None,
-    gap: Annotated[str, typer.Option(help="How far a proved bound may stay above the worst found.")] = "5 %",
-    budget: Annotated[str, typer.Option(help="Time for searching and proving, per file.")] = "10 s",
-    explain: Annotated[str | None, typer.Option(metavar="ID", help="Show the working of one finding.")] = None,
-    today: Annotated[str | None, typer.Option(help="Date against which accepted findings expire.")] = None,
+    files: Files,
+    form: Form = "terminal",
+    output: Output = None,
+    derating: Derating = None,
+    state: States = None,
+    gap: Gap = "5 %",
+    budget: Budget = "10 s",
+    explain: Explain = None,
+    today: Today = None,
 ) -> None:
     """Review design files: find and prove worst stresses, compare them with derated ratings, list cautions.
 
@@ -46,17 +79,19 @@ def review(
     The exit code says what came out: 0 ready, 1 something is above its limit, 3 something is unanswered, 2 the input
     can't be used (then nothing is written). Ctrl-C ends the search; what isn't proved by then is "unproved".
     """
-    from stresscheck.cli.output import write
+    from stresscheck.cli.output import check_target, style, write
 
     options = _options(form, gap, budget, today)
+    check_target(output, files)
     designs = _load(files, derating)
-    stop = _Interrupt()
-    reviews = [
-        _one(design, derating, state, options, stop.asked, f"{design.file}: " if len(designs) > 1 else "")
-        for design in designs
-    ]
-    text = _explained(reviews, explain) if explain else _text(reviews, form, many=len(files) > 1)
-    write(text, output)
+    with Interrupt() as stop:
+        reviews = [
+            _one(design, derating, state, options, stop.asked, f"{design.file}: " if len(designs) > 1 else "")
+            for design in designs
+        ]
+    columns, tones = style(output)
+    text = _explained(reviews, explain, columns, tones) if explain else ""
+    write(text or render_all(form, reviews, width=columns, color=tones), output)
     codes = {EXIT_OF[r.verdict] for r in reviews}
     raise typer.Exit(next(code for code in WORST_FIRST if code in codes))
 
@@ -64,7 +99,6 @@ def review(
 def _options(form: str, gap: str, budget: str, today: str | None) -> dict[str, Any]:
     """Options as figures; every wrong one is a problem of the command line."""
     from stresscheck.errors import InputError, Problem
-    from stresscheck.report.formats import FORMATS
     from stresscheck.units import UnitError, Wanted, parse
 
     problems: list[Problem] = []
@@ -123,28 +157,6 @@ def _load(files: list[Path], derating: str | None) -> list[Design]:
     return designs
 
 
-class _Interrupt:
-    """The first Ctrl-C ends the search and lets the report be written; the second ends the program."""
-
-    def __init__(self) -> None:
-        self.seen = False
-        self.start = self.told = time.monotonic()
-        signal.signal(signal.SIGINT, self._first)
-
-    def _first(self, number: int, frame: object) -> None:
-        self.seen = True
-        signal.signal(signal.SIGINT, signal.default_int_handler)
-        print("ending the search; once more to end without a report", file=sys.stderr)
-
-    def asked(self) -> bool:
-        """Whether to end; called all the time while searching, so it also tells a waiting person that work goes on."""
-        now = time.monotonic()
-        if now - self.told > 1.0 and sys.stderr.isatty():
-            self.told = now
-            print(f"searching and proving, {now - self.start:.0f} s", file=sys.stderr)
-        return self.seen
-
-
 def _one(
     design: Design,
     derating: str | None,
@@ -166,27 +178,7 @@ def _one(
     )
 
 
-def _text(reviews: list[Review], form: str, *, many: bool) -> str:
-    from stresscheck.cli.output import color, width
-    from stresscheck.report.formats import renderer
-
-    if form == "json":
-        from stresscheck.report.json_format import as_data, dump
-
-        return dump([as_data(r) for r in reviews] if many else as_data(reviews[0]))
-    if form != "terminal":
-        return "\n".join(renderer(form)(r) for r in reviews)
-    from stresscheck.report import terminal_format
-    from stresscheck.report.summary import summary
-
-    parts = [terminal_format.render(r, width(), color=color()) for r in reviews]
-    if many:
-        parts.append(summary(reviews, width(), color=color()))
-    return "\n".join(parts)
-
-
-def _explained(reviews: list[Review], finding: str) -> str:
-    from stresscheck.cli.output import color, width
+def _explained(reviews: list[Review], finding: str, columns: int, tones: bool) -> str:
     from stresscheck.errors import InputError, Problem
     from stresscheck.report.explain_format import explain
 
@@ -194,7 +186,7 @@ def _explained(reviews: list[Review], finding: str) -> str:
     known: list[str] = []
     for r in reviews:
         try:
-            parts.append(explain(r, finding, width(), color=color()))
+            parts.append(explain(r, finding, columns, color=tones))
         except KeyError as error:
             known.append(str(error.args[0]))
     if not parts:

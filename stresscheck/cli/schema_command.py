@@ -9,7 +9,7 @@ import typer
 
 
 def schema(
-    output: Annotated[Path | None, typer.Option(help="Write here instead of standard output.")] = None,
+    output: Annotated[Path | None, typer.Option(metavar="FILE", help="Write here instead of standard output.")] = None,
 ) -> None:
     """Print the JSON Schema of the design file, for editors that check TOML as you type.
 

@@ -9,9 +9,7 @@ import typer
 
 
 def start(
-    file: Annotated[
-        Path | None, typer.Argument(metavar="[FILE]", help="Where to write it; left out: print it.")
-    ] = None,
+    file: Annotated[Path | None, typer.Argument(metavar="FILE", help="Where to write it; left out: print it.")] = None,
 ) -> None:
     """Write a commented design file to begin with. It never overwrites a file.
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Iterable
 
 from stresscheck.findings.finding import Finding
 from stresscheck.units import render
@@ -46,6 +47,12 @@ def share(finding: Finding) -> float | None:
         return finding.ratio
     span = finding.allowed - ZERO_CELSIUS
     return (finding.worst - ZERO_CELSIUS) / span if span > 0.0 else finding.ratio
+
+
+def closest(findings: Iterable[Finding]) -> Finding | None:
+    """The finding that uses most of its limit, accepted ones left out; None where no finding has a limit."""
+    ranked = [f for f in findings if f.ratio is not None and not f.accepted]
+    return max(ranked, key=lambda f: share(f) or 0.0, default=None)
 
 
 def share_of_bound(finding: Finding) -> float | None:

@@ -5,6 +5,8 @@ from __future__ import annotations
 import textwrap
 from dataclasses import dataclass, field
 
+from stresscheck.report.plain_text import harmless
+
 TONES = {"plain": "", "head": "bold", "grave": "bold reverse", "open": "bold underline", "quiet": "dim"}
 """Tones and how a terminal shows them: by weight and frame, never by hue alone."""
 
@@ -29,7 +31,7 @@ class Lines:
 
     def fixed(self, text: str, tone: str = "plain") -> None:
         """One line as it stands."""
-        self.items.append((text.rstrip(), tone))
+        self.items.append((harmless(text.rstrip()), tone))
 
     def text(self, *, color: bool) -> str:
         """All lines; with `color`, tones as escape codes of the terminal."""
@@ -39,8 +41,8 @@ class Lines:
 
 
 def clean(text: str) -> str:
-    """Text without line feeds and tabs, for one paragraph."""
-    return " ".join(text.splitlines()).replace("\t", " ").strip()
+    """Text without line feeds and tabs, for one paragraph; characters without a shape are shown by their code."""
+    return harmless(" ".join(text.splitlines()).replace("\t", " ").strip())
 
 
 def _styled(items: list[tuple[str, str]], width: int) -> str:

@@ -16,8 +16,8 @@ _SPECIAL = "\\`*_{}[]<>|~&#"
 def render(review: Review) -> str:
     """The whole review."""
     parts = [
-        *_head(review), *_findings(review), *_working(review), *_circuit(review), *_cautions(review), *_notes(review),
-        "", text(CLOSING), "",
+        *_head(review), *_findings(review), *_working(review), *_circuit(review), *_cautions(review),
+        *_checklist(review), *_notes(review), "", text(CLOSING), "",
     ]  # fmt: skip
     return "\n".join(parts)
 
@@ -115,6 +115,12 @@ def _cautions(review: Review) -> list[str]:
         for c in review.cautions
     ]
     return [*out, "" if review.cautions else "None was triggered by the data entered.", ""]
+
+
+def _checklist(review: Review) -> list[str]:
+    if not review.checklist:
+        return []
+    return ["## Before it is powered", "", *(f"- {text(c.text)}: {text(c.because)}" for c in review.checklist), ""]
 
 
 def _notes(review: Review) -> list[str]:

@@ -14,8 +14,7 @@ def summary(reviews: Sequence[Review], width: int = 80, *, color: bool = False) 
     out = Lines(width)
     out.add(f"{len(reviews)} designs", tone="open")
     for review in reviews:
-        ranked = [f for f in review.findings if f.ratio is not None and not f.accepted]
-        worst = max(ranked, key=lambda f: figures.share(f) or 0.0, default=None)
+        worst = figures.closest(review.findings)
         tail = "" if worst is None else f": {worst.id} {figures.room(worst)}"
         out.add(f"{review.verdict:<11} {review.design.file}{tail}", indent=2, hang=12)
     return out.text(color=color)

@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from stresscheck.findings.finding import Finding
 from stresscheck.report import figures
 from stresscheck.report.lines import Lines
 from stresscheck.report.record import Review
+from stresscheck.report.summary import summary
 
 ANSWER = {
-    "ready": "READY       every finding is within its limit, by proof",
+    "ready": "READY       every finding that counts is within its limit, by proof",
     "exceeded": "EXCEEDED    a limit is exceeded",
     "unanswered": "UNANSWERED  nothing found above its limit, but not everything has an answer",
 }
@@ -28,10 +31,19 @@ def render(review: Review, width: int = 80, *, color: bool = False) -> str:
     _within(out, review)
     _circuit(out, review)
     _cautions(out, review)
+    _checklist(out, review)
     _notes(out, review)
     out.add()
     out.add(CLOSING, hang=0, tone="quiet")
     return out.text(color=color)
+
+
+def render_all(reviews: Sequence[Review], width: int = 80, *, color: bool = False) -> str:
+    """Reviews one after the other; of several, a summary at the end, where a terminal stands still."""
+    texts = [render(review, width, color=color) for review in reviews]
+    if len(reviews) > 1:
+        texts.append(summary(reviews, width, color=color))
+    return "\n".join(texts)
 
 
 def _head(out: Lines, review: Review) -> None:
@@ -43,15 +55,20 @@ def _head(out: Lines, review: Review) -> None:
     out.add(ANSWER[review.verdict], hang=12, tone="head" if review.verdict == "ready" else "grave")
     counts = ", ".join(f"{number} {word}" for word, number in review.counts if number)
     out.add(f"findings    {counts or 'none'}", hang=12)
-    ranked = [f for f in review.findings if f.ratio is not None and not f.accepted]
-    if ranked:
-        worst = max(ranked, key=lambda f: figures.share(f) or 0.0)
+    worst = figures.closest(review.findings)
+    if worst is not None:
         reached = figures.stress(worst.worst, worst.unit)
         out.add(
-            f"closest     {worst.id}: {reached} against {figures.limit_in_words(worst)}, {figures.room(worst)}", hang=12
+            f"worst       {worst.id}: {reached} against {figures.limit_in_words(worst)}, {figures.room(worst)}", hang=12
         )
         if worst.reason:
             out.add(f"because     {worst.reason}", hang=12)
+        if worst.at is not None:
+            out.add(f"where       {where(worst).removeprefix('at ')}", hang=12)
+    no_answer = [f for f in review.findings if f.verdict in ("no-rating", "not-checked") and not f.accepted]
+    if no_answer:
+        more = f" (and {len(no_answer) - 1} more)" if len(no_answer) > 1 else ""
+        out.add(f"no answer   {no_answer[0].id}: {no_answer[0].why}{more}", hang=12)
     if review.cautions:
         out.add(f"cautions    {len(review.cautions)}, listed below", hang=12)
 
@@ -64,11 +81,11 @@ def _attention(out: Lines, review: Review) -> None:
         if found:
             out.add()
             out.add(f"{verdict} ({len(found)})", tone="open")
-        if verdict == "not-checked":
-            _grouped(out, found)
-        else:
-            for finding in found:
+        for finding in found:
+            if verdict != "not-checked" or finding.worst is not None:
                 _in_full(out, finding)
+        if verdict == "not-checked":
+            _grouped(out, [f for f in found if f.worst is None])
     accepted = [f for f in review.findings if f.accepted]
     if accepted:
         out.add()
@@ -78,16 +95,17 @@ def _attention(out: Lines, review: Review) -> None:
 
 
 def _grouped(out: Lines, found: list[Finding]) -> None:
-    """Findings with the same reason together: one missing thing is told once."""
+    """Findings without a figure and with the same reason together: one missing thing is told once."""
     reasons: dict[str, list[str]] = {}
     for finding in found:
-        reasons.setdefault(finding.why, []).append(finding.id)
+        limit = f", limit {figures.limit_in_words(finding)}" if finding.allowed is not None else ""
+        reasons.setdefault(finding.why, []).append(finding.id + limit)
     for why, ids in reasons.items():
         out.add(f"{', '.join(ids)}: {why}", indent=2, hang=2)
 
 
 def _in_full(out: Lines, finding: Finding) -> None:
-    out.add(finding.id, indent=2, tone="head")
+    out.add(f"{finding.id}, {finding.verdict}" if finding.accepted else finding.id, indent=2, tone="head")
     if finding.worst is not None:
         share = f"   {figures.room(finding)}" if finding.ratio is not None else ""
         out.add(
@@ -105,6 +123,8 @@ def _in_full(out: Lines, finding: Finding) -> None:
         out.add(short, indent=4)
     if finding.why:
         out.add(f"why: {finding.why}", indent=4)
+    for remark in finding.remarks:
+        out.add(remark, indent=4)
 
 
 def _figures(finding: Finding) -> str:
@@ -149,6 +169,7 @@ def _within(out: Lines, review: Review) -> None:
         out.add(f"state {state}{full}", indent=2, tone="head")
         for finding in mine:
             _compact(out, finding)
+        _remarks(out, mine)
 
 
 def _compact(out: Lines, finding: Finding) -> None:
@@ -161,9 +182,20 @@ def _compact(out: Lines, finding: Finding) -> None:
         out.fixed(row)
     else:
         out.add(f"{name}: {worst} of {allowed}, {figures.room(finding)}", indent=4)
+    bound = figures.stress(finding.bound, finding.unit)
+    notes = [f"nominal {figures.plain(finding.nominal, finding.unit)}, bound {bound}"]
     short = figures.corners_fall_short(finding)
-    if short:
-        out.add(short, indent=6)
+    out.add("; ".join([*notes, short] if short else notes), indent=6, tone="quiet")
+
+
+def _remarks(out: Lines, found: list[Finding]) -> None:
+    """Remarks on findings of a state, each distinct one told once."""
+    told: dict[str, list[str]] = {}
+    for finding in found:
+        for remark in finding.remarks:
+            told.setdefault(remark, []).append(f"{finding.part} {finding.quantity}")
+    for remark, names in told.items():
+        out.add(f"{', '.join(names)}: {remark}", indent=4, tone="quiet")
 
 
 def _circuit(out: Lines, review: Review) -> None:
@@ -201,6 +233,15 @@ def _cautions(out: Lines, review: Review) -> None:
     for caution in review.cautions:
         out.add(caution.id, indent=2, tone="head")
         out.add(caution.text, indent=4, hang=0)
+
+
+def _checklist(out: Lines, review: Review) -> None:
+    if not review.checklist:
+        return
+    out.add()
+    out.add("before it is powered", tone="open")
+    for line in review.checklist:
+        out.add(f"( ) {line.text}: {line.because}", indent=2, hang=4)
 
 
 def _notes(out: Lines, review: Review) -> None:

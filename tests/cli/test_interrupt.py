@@ -9,7 +9,11 @@ import sys
 import time
 from pathlib import Path
 
+import pytest
+
 from stresscheck.chain import review
+from stresscheck.cli import guarded
+from stresscheck.cli.interrupt import Interrupt
 from stresscheck.design.load import read_design
 
 SECTION = """
@@ -73,3 +77,22 @@ def test_review_interrupted_at_once_passes_nothing_unproved() -> None:
     assert unproved
     for finding in record.findings:
         assert finding.verdict != "within" or finding.bound <= finding.allowed
+
+
+def test_interrupt_handler_of_the_caller_is_back_after_the_search() -> None:
+    before = signal.getsignal(signal.SIGINT)
+    with Interrupt() as stop:
+        assert not stop.asked()
+        signal.raise_signal(signal.SIGINT)
+        assert stop.asked()
+        with pytest.raises(KeyboardInterrupt):
+            signal.raise_signal(signal.SIGINT)
+    assert signal.getsignal(signal.SIGINT) is before
+
+
+def test_interrupt_while_a_file_is_read_ends_with_130(monkeypatch: pytest.MonkeyPatch, tmp_path: Path) -> None:
+    def stopped(path: Path) -> None:
+        raise KeyboardInterrupt
+
+    monkeypatch.setattr("stresscheck.design.load.load_design", stopped)
+    assert guarded(["review", str(tmp_path / "any.toml")]) == 130
