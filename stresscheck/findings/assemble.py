@@ -80,7 +80,9 @@ def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, 
         checks = checks_of(design, policy, kelvin, full=full)
     plan = _plan(network, checks)
     problem = Problem(network, notes, plan.asked)
-    worst = worst_case(problem, gap, np.array(plan.limits), stop)
+    # Nothing to decide where there is no limit: such a stress only has its gap narrowed, with the others' patience.
+    limits = np.array([limit if math.isfinite(limit) else math.inf for limit in plan.limits])
+    worst = worst_case(problem, gap, limits, stop)
     findings = tuple(
         _finding(design, network, check, state, kind, plan, worst, index, gap) for index, check in enumerate(checks)
     )
@@ -254,7 +256,7 @@ def _method(network: Network, worst: Worst) -> str:
     if worst.too_many:
         return "none: too many values vary at once for the corner rule"
     if worst.bounds.spent:
-        return "corner rule over boxes, stopped by the budget before every gap was closed"
+        return "corner rule over boxes, ended before every gap was closed"
     return "corner rule over boxes, split until every gap was closed"
 
 

@@ -19,6 +19,9 @@ Stop = Callable[[bool], bool]
 """True ends the search; the argument says whether every function is decided against its limit already."""
 
 
+PATIENCE = 400
+"""Boxes after which gaps are no longer narrowed once every function is decided: counted, not timed, so that the same
+input gives the same bounds."""
 ROUNDS = 6
 """Rounds of splitting that a function gets before the next one's turn."""
 
@@ -38,8 +41,9 @@ class Goal:
     """When a bound is good enough.
 
     `gap`: relative distance to the largest value found; `floor` [functions]: what counts as zero, so that a
-    function that is zero everywhere closes too; `limit` [functions]: what the function is compared with, NaN where
-    nothing is. A function whose found value is over its limit, or whose bound is under it, is decided.
+    function that is zero everywhere closes too; `limit` [functions]: what the function is compared with, infinite
+    where nothing is, NaN where closing the gap itself is asked for. A function whose found value is over its limit, or
+    whose bound is under it, is decided.
     """
 
     gap: float
@@ -114,7 +118,7 @@ class _Pool:
 
 
 def prove(box: Box, enclose: Enclose, improve: Improve, found: Floats, goal: Goal, batch: int, stop: Stop) -> Bounds:
-    """Best-first branch and bound until every function has closed its gap, or `stop` says so.
+    """Best-first branch and bound until every function has closed its gap, patience is spent, or `stop` says so.
 
     found: largest values known [functions]; NaN functions get an infinite bound. A child's bound is never above its
     parent's. batch: how many boxes are split together. The functions take turns, those that are undecided against
@@ -131,7 +135,8 @@ def prove(box: Box, enclose: Enclose, improve: Improve, found: Floats, goal: Goa
     while len(pool.bound) and box.varying:
         overall = pool.overall()
         undecided = overall > goal.decided(found)
-        if stop(not undecided.any()):
+        decided = not undecided.any()
+        if stop(decided) or (decided and boxes >= PATIENCE):
             break
         turn = turns.next(undecided if undecided.any() else overall > goal.close(found))
         low, high, parent, axis = pool.take(turn, goal.close(found), batch)

@@ -178,3 +178,13 @@ def test_python_calls_give_the_same_as_json(capsys: pytest.CaptureFixture[str]) 
     record = as_data(review(load_design(OPEN)))
     guarded(["review", OPEN, "--format", "json"])
     assert json.loads(capsys.readouterr().out) == json.loads(json.dumps(record))
+
+
+def test_readme_example_design_is_reviewed_as_it_stands(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    readme = (ROOT / "README.md").read_text(encoding="utf-8")
+    file = tmp_path / "readme.toml"
+    file.write_text(readme.split("```toml\n")[1].split("```")[0], encoding="utf-8")
+    assert guarded(["review", str(file), "--format", "json"]) in (0, 1, 3)
+    record = json.loads(capsys.readouterr().out)
+    assert {f["state"] for f in record["findings"]} == {"normal", "cold"}
+    assert all(f["verdict"] != "not-checked" for f in record["findings"])
