@@ -55,7 +55,7 @@ def review(
     """
     from stresscheck import __version__
 
-    policy = load_policy(derating or design.derating, design.folder)
+    policy = load_policy(design.derating if derating is None else derating, design.folder)
     names = _states(design, states)
     results: list[tuple[Design, StateFindings]] = []
     clock = _Clock(budget, len(names), interrupted)

@@ -21,7 +21,10 @@ def run() -> None:
 def guarded(arguments: list[str]) -> int:
     """Exit code of one call; whatever goes wrong inside ends as 70 with a word on where to report it."""
     os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")  # small matrices: threads only cost start-up time
-    for stream in (sys.stdout, sys.stderr):
+    for name in ("stdout", "stderr"):
+        if getattr(sys, name) is None:  # closed by the caller, who wants the exit code alone
+            setattr(sys, name, open(os.devnull, "w", encoding="utf-8"))  # noqa: SIM115 (open to the end)
+        stream = getattr(sys, name)
         if hasattr(stream, "reconfigure"):
             stream.reconfigure(errors="backslashreplace")  # an ASCII terminal must not end the run
     try:

@@ -26,9 +26,6 @@ Exit codes: 0 ready, 1 something is above its limit, 2 the input can't be used, 
 70 internal error, 130 interrupted, 141 broken pipe.
 """
 
-app = typer.Typer(
-    name="stresscheck", help=ABOUT, no_args_is_help=True, rich_markup_mode=None, pretty_exceptions_enable=False
-)
 COMMANDS: dict[str, tuple[Callable[..., None], str]] = {
     "review": (review, "Review design files: is it ready, what is worst, why, where."),
     "resonances": (resonances, "Show natural modes with Q, bandwidth and stored energy."),
@@ -37,15 +34,12 @@ COMMANDS: dict[str, tuple[Callable[..., None], str]] = {
     "start": (start, "Write a commented design file to begin with."),
 }
 """Name → (what it calls, one line for the list of commands; longer ones would be cut at 80 columns)."""
-for name, (command, line) in COMMANDS.items():
-    app.command(name, short_help=line)(command)
 
 
-@app.callback()
 def main(
     version: bool = typer.Option(False, "--version", help="Show the version and exit.", is_eager=True),
 ) -> None:
-    """Answer --version wherever it stands."""
+    """Answer --version before any sub-command is looked at."""
     if version:
         from stresscheck import __version__
 
@@ -56,15 +50,39 @@ def main(
 main.__doc__ = ABOUT
 
 
+def program(*, bare: bool = False) -> typer.Typer:
+    """The command with its sub-commands; `bare` leaves out its own --help and those that set up a shell's completion.
+
+    A command line that begins with a sub-command can't reach them; typer would read them all the same and import
+    pydantic for it, which doubles the time of a sub-command's --help.
+    """
+    made = typer.Typer(
+        name="stresscheck",
+        help=ABOUT,
+        no_args_is_help=True,
+        add_completion=not bare,
+        rich_markup_mode=None,
+        pretty_exceptions_enable=False,
+    )
+    made.callback(add_help_option=not bare)(main)
+    for name, (command, line) in COMMANDS.items():
+        made.command(name, short_help=line)(command)
+    return made
+
+
+app = program()
+
+
 def call(arguments: list[str]) -> int:
     """Exit code of one call of the command."""
     from stresscheck.cli import EXIT_INTERRUPTED, EXIT_PIPE, EXIT_UNUSABLE
     from stresscheck.errors import InputError
 
+    called = program(bare=True) if arguments and arguments[0] in COMMANDS else app
     try:
-        code = app(arguments, standalone_mode=False, prog_name="stresscheck")
+        code = called(arguments, standalone_mode=False, prog_name="stresscheck")
     except InputError as error:
-        tell(error)
+        tell(error, "reviewed" if arguments[:1] == ["review"] else "written")
         return EXIT_UNUSABLE
     except typer.Abort:
         return EXIT_INTERRUPTED
@@ -81,15 +99,15 @@ def call(arguments: list[str]) -> int:
     return int(code or 0)
 
 
-def tell(error: InputError) -> None:
+def tell(error: InputError, undone: str) -> None:
     """Every problem of an input on standard error, one block each; what was read is shown without control characters.
 
-    Free text of a file ends up here before anything has vouched for it.
+    Free text of a file ends up here before anything has vouched for it. undone: what was not done because of them.
     """
     from stresscheck.report.plain_text import harmless
 
     count = len(error.problems)
-    print(f"{count} problem{'s' if count != 1 else ''}; nothing was reviewed", file=sys.stderr)
+    print(f"{count} problem{'s' if count != 1 else ''}; nothing was {undone}", file=sys.stderr)
     for problem in error.problems:
         place = problem.file if problem.line is None else f"{problem.file}:{problem.line}"
         print(harmless(f"\n{place}  {problem.key}".rstrip(), keep="\n"), file=sys.stderr)

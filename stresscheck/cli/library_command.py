@@ -28,29 +28,19 @@ def library(
 
       stresscheck library policies src-severe
     """
+    from stresscheck.cli.inputs import not_known
     from stresscheck.cli.output import color, width, write
-    from stresscheck.errors import InputError, Problem
+    from stresscheck.errors import InputError
     from stresscheck.report.library_table import library_text
 
     wanted = SHELVES if shelf is None else (shelf,)
     if shelf is not None and shelf not in SHELVES:
-        known = ", ".join(SHELVES)
-        raise InputError(
-            [Problem("bad-command", "command line", None, "", shelf, f"one of {known}", "name one of these")]
-        )
+        raise InputError([not_known("command line", "SHELF", shelf, SHELVES, "bad-command")])
     try:
-        write(library_text(wanted, name, width(), color=color()), None)
+        text = library_text(wanted, name, width(), color=color())
     except KeyError as error:
-        raise InputError(
-            [
-                Problem(
-                    "unknown-name",
-                    "command line",
-                    None,
-                    shelf or "",
-                    str(name),
-                    f"one of {error.args[0]}",
-                    "name one of these",
-                )
-            ]
-        ) from None
+        if name is None:
+            raise
+        known = str(error.args[0]).split(", ")
+        raise InputError([not_known("command line", shelf or "", str(name), known)]) from None
+    write(text, None)

@@ -39,24 +39,27 @@ def forget_stdout() -> None:
     os.close(nowhere)
 
 
-def check_target(target: Path | None, inputs: Sequence[Path] = ()) -> None:
-    """Refuse, before any work is done, a file that can't be written or that is one of the inputs."""
+def check_target(target: Path | None, inputs: Sequence[Path] = (), key: str = "--output") -> None:
+    """Refuse, before any work is done, a file that can't be written or that is one of the inputs.
+
+    key: the option that named it, for the message.
+    """
     if target is None:
         return
     if not target.name or target.is_dir():
-        raise _refused(target, "a folder", "a file", "name a file in it")
+        raise _refused(target, "a folder", "a file", "name a file in it", key)
     if not target.parent.is_dir():
-        raise _refused(target, f"no folder {target.parent}", "a folder that exists", "make the folder first")
+        raise _refused(target, f"no folder {target.parent}", "a folder that exists", "make the folder first", key)
     if any(target.exists() and file.exists() and target.samefile(file) for file in inputs):
-        raise _refused(target, "the design file itself", "another file than the input", "choose another name")
+        raise _refused(target, "the design file itself", "another file than the input", "choose another name", key)
 
 
-def write(text: str, target: Path | None) -> None:
+def write(text: str, target: Path | None, key: str = "--output") -> None:
     """To standard output, or to a file that appears only when it is complete."""
     if target is None:
         _to_stdout(text)
         return
-    check_target(target)
+    check_target(target, key=key)
     draft = target.with_name(f".{target.name}.{os.getpid()}.part")
     # A pipe or a device is written into; put in its place, a finished file would end it for everybody.
     into = target if target.exists() and not target.is_file() else draft
@@ -68,7 +71,7 @@ def write(text: str, target: Path | None) -> None:
         if into is draft:
             draft.unlink(missing_ok=True)
         reason = error.strerror or "an error of the file system"
-        raise _refused(target, reason, "a file that can be written", "check the path") from None
+        raise _refused(target, reason, "a file that can be written", "check the path", key) from None
 
 
 def _to_stdout(text: str) -> None:
@@ -84,8 +87,8 @@ def _to_stdout(text: str) -> None:
         raise _refused(None, reason, "an output that takes what is written", "make room, or use --output") from None
 
 
-def _refused(target: Path | None, found: str, expected: str, repair: str) -> InputError:
+def _refused(target: Path | None, found: str, expected: str, repair: str, key: str = "") -> InputError:
     from stresscheck.errors import InputError, Problem
 
-    file, key = ("standard output", "") if target is None else (str(target), "--output")
+    file = "standard output" if target is None else str(target)
     return InputError([Problem("bad-command", file, None, key, found, expected, repair)])

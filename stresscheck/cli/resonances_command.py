@@ -19,9 +19,12 @@ def resonances(
     Every value is nominal. Example: stresscheck resonances tank.toml
     """
     from stresscheck.chain import resonances_of
+    from stresscheck.cli.inputs import load_all
     from stresscheck.cli.output import color, width, write
-    from stresscheck.design.load import load_design
+    from stresscheck.errors import InputError
     from stresscheck.report.modes_table import modes_table
 
-    found = resonances_of(load_design(file), state)
-    write(modes_table(found, width(), color=color()), None)
+    designs, problems = load_all([file], None, state, policies=False)
+    if problems:
+        raise InputError(problems)
+    write(modes_table(resonances_of(designs[0], state), width(), color=color()), None)

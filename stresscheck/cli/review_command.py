@@ -79,35 +79,45 @@ def review(
     The exit code says what came out: 0 ready, 1 something is above its limit, 3 something is unanswered, 2 the input
     can't be used (then nothing is written). Ctrl-C ends the search; what isn't proved by then is "unproved".
     """
+    from stresscheck.cli.inputs import load_all
     from stresscheck.cli.output import check_target, style, write
+    from stresscheck.errors import InputError
 
-    options = _options(form, gap, budget, today)
-    check_target(output, files)
-    designs = _load(files, derating)
+    options, mistakes = _options(form, gap, budget, today, explain)
+    designs, problems = load_all(files, derating, state)
+    try:
+        check_target(output, files)
+    except InputError as error:
+        mistakes.extend(error.problems)
+    if mistakes or problems:
+        raise InputError([*mistakes, *problems])
     with Interrupt() as stop:
         reviews = [
             _one(design, derating, state, options, stop.asked, f"{design.file}: " if len(designs) > 1 else "")
             for design in designs
         ]
     columns, tones = style(output)
-    text = _explained(reviews, explain, columns, tones) if explain else ""
-    write(text or render_all(form, reviews, width=columns, color=tones), output)
+    if explain is None:
+        write(render_all(form, reviews, width=columns, color=tones), output)
+    else:
+        write(_explained(reviews, explain, columns, tones), output)
     codes = {EXIT_OF[r.verdict] for r in reviews}
     raise typer.Exit(next(code for code in WORST_FIRST if code in codes))
 
 
-def _options(form: str, gap: str, budget: str, today: str | None) -> dict[str, Any]:
-    """Options as figures; every wrong one is a problem of the command line."""
-    from stresscheck.errors import InputError, Problem
+def _options(
+    form: str, gap: str, budget: str, today: str | None, explain: str | None
+) -> tuple[dict[str, Any], list[Problem]]:
+    """Options as figures, and every wrong one as a problem of the command line."""
+    from stresscheck.cli.inputs import not_known, wrong
     from stresscheck.units import UnitError, Wanted, parse
 
     problems: list[Problem] = []
-    found: dict[str, Any] = {}
+    found: dict[str, Any] = {"today": None}
     if form not in FORMATS:
-        known = ", ".join(FORMATS)
-        problems.append(
-            Problem("bad-command", "command line", None, "--format", form, f"one of {known}", "name one of these")
-        )
+        problems.append(not_known("command line", "--format", form, FORMATS, "bad-command"))
+    elif explain is not None and form != "terminal":
+        problems.append(wrong("--explain", f"--format {form}", "--format terminal", "leave one of the two out"))
     for name, text, wanted in (
         ("gap", gap, Wanted("a gap", "%", 1e-6, 10.0, "5 %")),
         ("budget", budget, Wanted("a time", "s", 0.001, 1e6, "10 s")),
@@ -115,46 +125,13 @@ def _options(form: str, gap: str, budget: str, today: str | None) -> dict[str, A
         try:
             found[name] = parse(text, wanted)
         except UnitError as error:
-            problems.append(
-                Problem("bad-command", "command line", None, f"--{name}", text, error.expected, error.repair)
-            )
-    try:
-        found["today"] = None if today is None else datetime.date.fromisoformat(today)
-    except ValueError:
-        problems.append(
-            Problem(
-                "bad-command",
-                "command line",
-                None,
-                "--today",
-                str(today),
-                "a date such as 2027-03-01",
-                "write year-month-day",
-            )
-        )
-    if problems:
-        raise InputError(problems)
-    return found
-
-
-def _load(files: list[Path], derating: str | None) -> list[Design]:
-    """All designs, or every problem of all files and of the policies that they name."""
-    from stresscheck.design.load import load_design
-    from stresscheck.errors import InputError
-    from stresscheck.limits.policy import load_policy
-
-    designs: list[Design] = []
-    problems: list[Problem] = []
-    for file in files:
+            problems.append(wrong(f"--{name}", text, error.expected, error.repair))
+    if today is not None:
         try:
-            design = load_design(file)
-            load_policy(derating or design.derating, design.folder)
-            designs.append(design)
-        except InputError as error:
-            problems.extend(error.problems)
-    if problems:
-        raise InputError(problems)
-    return designs
+            found["today"] = datetime.date.fromisoformat(today)
+        except ValueError:
+            problems.append(wrong("--today", today, "a date such as 2027-03-01", "write year-month-day"))
+    return found, problems
 
 
 def _one(
@@ -179,28 +156,17 @@ def _one(
 
 
 def _explained(reviews: list[Review], finding: str, columns: int, tones: bool) -> str:
-    from stresscheck.errors import InputError, Problem
+    from stresscheck.cli.inputs import not_known
+    from stresscheck.errors import InputError
     from stresscheck.report.explain_format import explain
 
     parts = []
     known: list[str] = []
     for r in reviews:
-        try:
+        ids = [f.id for f in r.findings]
+        if finding in ids:
             parts.append(explain(r, finding, columns, color=tones))
-        except KeyError as error:
-            known.append(str(error.args[0]))
+        known.extend(ids)
     if not parts:
-        raise InputError(
-            [
-                Problem(
-                    "unknown-name",
-                    "command line",
-                    None,
-                    "--explain",
-                    finding,
-                    "one of " + "; ".join(known),
-                    "name one of these",
-                )
-            ]
-        )
+        raise InputError([not_known("command line", "--explain", finding, dict.fromkeys(known))])
     return "\n".join(parts)

@@ -20,9 +20,8 @@ def start(
     from stresscheck.errors import InputError, Problem
 
     if file is not None and file.exists():
-        raise InputError(
-            [Problem("bad-command", str(file), None, "", "a file that exists", "a new file", "choose another name")]
-        )
-    write(starter_text(), file)
+        found = "a folder" if file.is_dir() else "a file that exists"
+        raise InputError([Problem("bad-command", str(file), None, "", found, "a new file", "choose another name")])
+    write(starter_text(), file, key="")
     if file is not None:
         print(f"wrote {file}; next: stresscheck review {file}")

@@ -32,12 +32,13 @@ def load_design(path: str | Path) -> Design:
     file = Path(path)
     name = key_text((file.name,))
     try:
-        if file.stat().st_size > LARGEST:
-            raise InputError([too_large(name)])
-        data = file.read_bytes()
+        with file.open("rb") as stream:
+            data = stream.read(LARGEST + 1)  # bounded: the size of a device or a pipe says nothing
     except (OSError, ValueError) as error:
         reason = getattr(error, "strerror", None) or "a name that no file can have"
         raise InputError([unreadable(name, reason, "a file that can be read", "check name and rights")]) from None
+    if len(data) > LARGEST:
+        raise InputError([too_large(name)])
     return read_design(data, name, file.parent)
 
 

@@ -83,9 +83,11 @@ def _read(path: str, changed: int, size: int) -> Parts:
     """Tables of one parts file; each rating without a source gets the file's."""
     file = Path(path)
     try:
-        if size > LARGEST:
+        with file.open("rb") as stream:
+            data = stream.read(LARGEST + 1)  # bounded: the size of a device says nothing
+        if len(data) > LARGEST:
             raise ValueError("larger than 1 MiB")
-        text = file.read_bytes().decode("utf-8")
+        text = data.decode("utf-8")
         raw = tomllib.loads(text)
     except (OSError, ValueError, RecursionError) as error:
         reason = getattr(error, "strerror", None) or str(error)[:200].encode("unicode_escape").decode("ascii")

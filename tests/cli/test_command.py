@@ -166,8 +166,9 @@ def test_help_of_every_command_teaches_with_an_example() -> None:
         assert "xample" in done.output, command
 
 
-def test_version_is_answered_wherever_it_stands(capsys: pytest.CaptureFixture[str]) -> None:
-    assert guarded(["--version"]) == 0
+@pytest.mark.parametrize("arguments", [["--version"], ["--version", "review"]])
+def test_version_is_answered_before_any_command(arguments: list[str], capsys: pytest.CaptureFixture[str]) -> None:
+    assert guarded(arguments) == 0
     assert capsys.readouterr().out.startswith("stresscheck 0.")
 
 
