@@ -17,7 +17,7 @@ from stresscheck.design.starter import starter_text
 from stresscheck.errors import InputError
 from stresscheck.shipped import examples_dir
 
-EXAMPLES = sorted(p for p in examples_dir().glob("*/*.toml") if not p.name.endswith(".expect.toml"))
+EXAMPLES = sorted(examples_dir().glob("*/*.toml"))
 MORE = (
     TANK
     + """

@@ -16,7 +16,7 @@ ROOT = Path(__file__).resolve().parents[2]
 SOURCES = sorted((ROOT / "stresscheck").rglob("*.py"))
 TESTS = sorted((ROOT / "tests").rglob("*.py"))
 TEXTS = [*SOURCES, *TESTS, *sorted(ROOT.glob("*.md")), *sorted((ROOT / "ratings").rglob("*.*")),
-         *sorted((ROOT / "examples").rglob("*.toml"))]  # fmt: skip
+         *sorted((ROOT / "examples").rglob("*.*"))]  # fmt: skip
 LONGEST_FILE, LONGEST_FUNCTION = 400, 50
 HEAVY = ("numpy", "pint", "pydantic", "rich")
 # Words that no output, document or comment of the project may use of a circuit or of itself.
