@@ -17,6 +17,7 @@ from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import phasors
 from stresscheck.findings.assemble import StateFindings
 from stresscheck.findings.explain import distance
+from stresscheck.stress.seen import peak
 from stresscheck.stress.sizes import sizes_at
 from stresscheck.stress.stresses import stresses
 
@@ -65,7 +66,7 @@ def _unknown(node: str, state: str, reachable: bool) -> NodeFact:
 
 
 def _highest(network: Network, point: Floats) -> float:
-    return max(float(point[line.frequency_axis]) for line in network.lines)
+    return max(float(line.hertz(point[None])[0]) for line in network.lines if line.weighty)
 
 
 def _reason(network: Network, point: Floats) -> tuple[str, float | None, float | None]:
@@ -73,7 +74,7 @@ def _reason(network: Network, point: Floats) -> tuple[str, float | None, float |
     source = network.sources[0]
     if len(network.sources) != 1 or source.branch is None:
         return source.name, None, None
-    hertz = float(point[network.lines[0].frequency_axis])
+    hertz = float(network.lines[0].hertz(point[None])[0])
     level = float(abs(phasors(network, point[None], network.lines[0]).level[0, 0]))
     near = [m for m in natural_modes(network, point) if distance(m, hertz) <= NEAR]
     resonance = min(near, key=lambda m: abs(m.hertz - hertz)).hertz if near else None
@@ -102,7 +103,7 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
         tied = group[branch.first] == group[branch.second] or network.branch_of(name, "leakage") is not None
         trapped = None
         if not tied and point is not None:
-            trapped = float(sizes_at(network, point[None]).direct.volt[0, place])
+            trapped = abs(float(sizes_at(network, point[None]).direct.volt[0, place]))
         drive, volt, resonance = _reason(network, point if point is not None else network.axes.nominal)
         facts.append(
             CapacitorFact(
@@ -155,8 +156,8 @@ def _worst_volt(
     value, point = worst[name, "voltage_peak"]
     if not math.isfinite(value):
         return math.nan, None
-    sizes = sizes_at(network, point[None])
-    return float(sizes.volt[:, 0, place].sum() + sizes.direct.volt[0, place]), point
+    seen = sizes_at(network, point[None]).branch(place)
+    return float(peak(seen.dc_volt, seen.volt_extremes)[0]), point
 
 
 def _without_sources(network: Network) -> Network:

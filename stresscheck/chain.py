@@ -14,9 +14,11 @@ from stresscheck.cautions.registry import cautions_for
 from stresscheck.circuit.build import build
 from stresscheck.errors import CheckError, InputError, Problem
 from stresscheck.findings.assemble import StateFindings, find_all
+from stresscheck.findings.events import find_events
 from stresscheck.findings.finding import VERDICTS, Finding
+from stresscheck.findings.linearity import guarded
 from stresscheck.findings.outlook import DriveReport, Resonance, drive_reports, resonances
-from stresscheck.limits.policy import load_policy
+from stresscheck.limits.policy import Policy, load_policy
 from stresscheck.report.record import SCHEMA, Accepted, DeratingMark, DesignMark, Review
 
 if TYPE_CHECKING:
@@ -26,7 +28,9 @@ DECIDED_SHARE = 0.2
 """Part of the budget spent on closing gaps once every finding is decided against its limit."""
 
 ASSUMPTIONS = (
-    "Steady state only: switch-on, switch-off and changes while running aren't computed.",
+    "Events: switch-on from rest and switch-off of all drives at once, and changes from normal and back to it; peak "
+    "ratings only. A drive that is off is zero volt behind its resistance, or zero ampere; interrupting its current, "
+    "arcs and bouncing contacts aren't covered.",
     "Every part is linear; losses and values are those declared; wiring and stray coupling only as declared.",
     "Worst case over declared tolerances, ranges and bands, taken as independent of each other.",
     "Peaks of drives at different frequencies, or without stated phase, are added.",
@@ -53,8 +57,6 @@ def review(
     progress: called with a text and the done share; interrupted: True ends the search, what isn't proved by then is
     `unproved`. Raises InputError for an unknown policy or state.
     """
-    from stresscheck import __version__
-
     policy = load_policy(design.derating if derating is None else derating, design.folder)
     names = _states(design, states)
     results: list[tuple[Design, StateFindings]] = []
@@ -64,7 +66,17 @@ def review(
             progress(f"state {name}", number / len(names))
         there = design.in_state(name)
         results.append((there, find_all(there, name, _kind(design, name), policy, gap, clock.next())))
-    accepted = _accepted(design, results, today or datetime.date.today())
+    results = _with_events(design, results, progress, interrupted or (lambda: False))
+    return _record(design, policy, results, today or datetime.date.today())
+
+
+def _record(
+    design: Design, policy: Policy, results: list[tuple[Design, StateFindings]], today: datetime.date
+) -> Review:
+    """Put everything that was found into the frozen record."""
+    from stresscheck import __version__
+
+    accepted = _accepted(design, results, today)
     counted = {item.finding for item in accepted if item.counts}
     findings = tuple(
         replace(f, accepted=True) if f.id in counted else f for _, found in results for f in found.findings
@@ -86,6 +98,32 @@ def review(
         assumptions=ASSUMPTIONS,
         problems=tuple(f"state {found.state}: {found.why}" for _, found in results if found.why),
     )
+
+
+def _with_events(
+    design: Design,
+    results: list[tuple[Design, StateFindings]],
+    progress: Progress | None,
+    interrupted: Callable[[], bool],
+) -> list[tuple[Design, StateFindings]]:
+    """Add the findings on switch-on, switch-off and change to those of each state.
+
+    A state is reached from `normal` while running, `normal` from every other operating state.
+    """
+    out = []
+    for number, (there, found) in enumerate(results):
+        if progress is not None:
+            progress(f"events of state {found.state}", number / len(results))
+        others = [o for _, o in results if o.state != found.state and _leads(design, o.state, found.state)]
+        free = frozenset(name for name, drive in there.drive.items() if drive.any_waveform)
+        events = find_events(found, others, interrupted, free)
+        checks = () if found.steady is None else found.steady.checks
+        out.append((there, replace(found, findings=guarded(found.findings + events, checks))))
+    return out
+
+
+def _leads(design: Design, before: str, after: str) -> bool:
+    return before == "normal" or (after == "normal" and _kind(design, before) == "operating")
 
 
 def resonances_of(design: Design, states: Sequence[str] | None = None) -> tuple[Resonance, ...]:
@@ -173,13 +211,14 @@ def _counts(findings: Sequence[Finding]) -> tuple[tuple[str, int], ...]:
 def _facts(design: Design, results: list[tuple[Design, StateFindings]]) -> Facts:
     nodes: list[NodeFact] = []
     capacitors: list[CapacitorFact] = []
-    low, high = [], []
+    low: list[float] = []
+    high: list[float] = []
     for there, found in results:
         nodes.extend(node_facts(there, found))
         capacitors.extend(capacitor_facts(there, found))
-        for line in found.network.lines if found.network is not None else ():
-            low.append(found.network.axes.items[line.frequency_axis].low)  # type: ignore[union-attr]
-            high.append(found.network.axes.items[line.frequency_axis].high)  # type: ignore[union-attr]
+        bands = [] if found.network is None else found.network.weighty_bands()
+        low += [band[0] for band in bands]
+        high += [band[1] for band in bands]
     return Facts(tuple(nodes), tuple(capacitors), design.site.access, min(low, default=0.0), max(high, default=0.0))
 
 

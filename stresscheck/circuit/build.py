@@ -9,9 +9,12 @@ import numpy as np
 
 from stresscheck.circuit.axes import Axes, Axis
 from stresscheck.circuit.curves import LossCurve
+from stresscheck.circuit.harmonics import with_harmonics
 from stresscheck.circuit.joints import Joints
 from stresscheck.circuit.laws import TAU, CapacitorLaw, InductorLaw, Law, ResistorLaw
 from stresscheck.circuit.network import Branch, Coupling, Line, Network, Source, Transformer
+from stresscheck.circuit.waveform import SINE, Waveform
+from stresscheck.errors import CheckError
 
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
@@ -66,10 +69,10 @@ class _Builder:
             sources,
             lines,
         )
-        for line in lines:
-            axis = network.axes.items[line.frequency_axis]
+        network = with_harmonics(network)
+        for line in network.lines:
             for branch in self.branches:
-                branch.law.check_band(axis.low, axis.high)
+                branch.law.check_band(*network.band_of(line))
         return network
 
     def _present(self, kind: str) -> list[tuple[str, Any]]:
@@ -181,11 +184,32 @@ class _Builder:
             self.branches.append(Branch(name, "source", first, second, ResistorLaw(), None, ohm, drive=index))
         elif drive.source_resistance is not None:
             self._branch(name, "source", (first, second), ResistorLaw(), ohm)
+        waveform = _waveform(drive)
+        if waveform is not SINE and basis in ("available_power", "delivered_power"):
+            raise CheckError(f"{name} is set by power and isn't a sine, so its level isn't defined")
         known = basis if basis in ("available_power", "delivered_power") else "peak"
         return Source(
-            name, kind, known, first, second, branch, ohm, level, LEVEL_SCALE.get(basis, 1.0),
-            math.radians(drive.phase or 0.0), line, float(drive.offset or 0.0),
+            name, kind, known, first, second, branch, ohm, level, _level_scale(basis, waveform),
+            math.radians(drive.phase or 0.0), line, float(drive.offset or 0.0), waveform,
         )  # fmt: skip
+
+
+def _waveform(drive: Any) -> Waveform:
+    """Shape of a drive's period as declared."""
+    if drive.harmonics is not None:
+        return Waveform("listed", listed=tuple((n, size, math.radians(phase)) for n, size, phase in drive.harmonics))
+    duty = 0.5 if drive.duty is None else float(drive.duty)
+    return Waveform(drive.waveform, duty) if drive.waveform != "sine" else SINE
+
+
+def _level_scale(basis: str, waveform: Waveform) -> float:
+    """Peak over the declared level: sqrt(2) for the rms of a sine, 1 of a square, sqrt(3) of a triangle.
+
+    Listed harmonics are relative to a sine of the declared level.
+    """
+    if basis == "rms" and waveform.endless:
+        return {"square": 1.0, "triangle": math.sqrt(3.0)}[waveform.kind]
+    return LEVEL_SCALE.get(basis, 1.0)
 
 
 def _groups(bands: list[Any]) -> list[int]:

@@ -34,15 +34,30 @@ MOST_DEGREE = 16
 
 @dataclass(frozen=True, slots=True)
 class Pieces:
-    """Pieces of the band of many boxes and where the tableau is evaluated in each: `omega` [boxes, degree + 1]."""
+    """Pieces of the band of many boxes and where the tableau is evaluated in each: `omega` [boxes, degree + 1].
+
+    `degree`: that of the polynomials where the piece has no upper end; x = lowest omega / omega in (0, 1] then takes
+    the place of omega, and everything is multiplied by x^degree.
+    """
 
     omega: Floats
+    degree: int | None = None
 
     @staticmethod
     def of(low: Floats, high: Floats, degree: int) -> Pieces:
         """Ends low, high [rad/s], [boxes]. A single frequency needs a single point."""
         points = 0 if np.array_equal(low, high) else degree
         return Pieces(low[:, None] + (high - low)[:, None] * nodes(points))
+
+    @staticmethod
+    def beyond(low: Floats, degree: int) -> Pieces:
+        """Everything above low [rad/s], [boxes]; control values from x = 0 (endless frequency) to x = 1."""
+        return Pieces(low[:, None] / inner_nodes(degree), degree)
+
+    @property
+    def control(self) -> Floats:
+        """Turns values at the frequencies into control values."""
+        return control_matrix(self.count - 1) if self.degree is None else inner_control_matrix(self.degree)
 
     @property
     def count(self) -> int:
@@ -121,9 +136,10 @@ def corners(
     denominator = denominator.reshape(shape)
     numerator = numerator.reshape(*shape, *numerator.shape[2:])
     for dimension, fan in enumerate((pieces.count, *fans), start=1):
-        if fan > 2:
-            denominator = _to_control_values(denominator, dimension)
-            numerator = _to_control_values(numerator, dimension)
+        if fan > 2 or (dimension == 1 and pieces.degree is not None):
+            control = pieces.control if dimension == 1 else control_matrix(fan - 1)
+            denominator = _to_control_values(denominator, dimension, control)
+            numerator = _to_control_values(numerator, dimension, control)
     return Corners(denominator, numerator, moving)
 
 
@@ -137,14 +153,28 @@ def nodes(degree: int) -> Floats:
 @lru_cache(maxsize=32)
 def control_matrix(degree: int) -> Floats:
     """Turns values at `nodes` into Bernstein control values, [degree + 1, degree + 1]."""
-    x = nodes(degree)[:, None]
+    return _inverse_bernstein(nodes(degree), degree)
+
+
+def inner_nodes(degree: int) -> Floats:
+    """Points of (0, 1) at which a polynomial is evaluated where an end can't be: Chebyshev points."""
+    return np.asarray(0.5 - 0.5 * np.cos(np.pi * (np.arange(degree + 1) + 0.5) / (degree + 1)))
+
+
+@lru_cache(maxsize=32)
+def inner_control_matrix(degree: int) -> Floats:
+    """Turns values at `inner_nodes` into Bernstein control values, [degree + 1, degree + 1]."""
+    return _inverse_bernstein(inner_nodes(degree), degree)
+
+
+def _inverse_bernstein(at: Floats, degree: int) -> Floats:
+    x = at[:, None]
     k = np.arange(degree + 1)
     binomial = np.array([comb(degree, int(i)) for i in k], dtype=np.float64)
     return np.asarray(np.linalg.inv(binomial * x**k * (1.0 - x) ** (degree - k)))
 
 
-def _to_control_values(values: Complexes, dimension: int) -> Complexes:
-    matrix = control_matrix(values.shape[dimension] - 1)
+def _to_control_values(values: Complexes, dimension: int, matrix: Floats) -> Complexes:
     return np.moveaxis(np.tensordot(matrix, values, axes=(1, dimension)), 0, dimension)
 
 
@@ -167,7 +197,8 @@ def _base_determinant(base: Complexes, pieces: Pieces, scaled: int) -> Complexes
     sign, size = np.linalg.slogdet(base)
     sign, size = sign.reshape(pieces.omega.shape), size.reshape(pieces.omega.shape)
     ratio = sign / sign[:, :1] * np.exp(size - size[:, :1])
-    return np.asarray((ratio * (pieces.omega / pieces.omega[:, :1]) ** scaled).reshape(-1))
+    power = scaled - (pieces.degree or 0)
+    return np.asarray((ratio * (pieces.omega / pieces.omega[:, :1]) ** power).reshape(-1))
 
 
 def _grid(form: Frame, base: Complexes, moving: tuple[Entry, ...], rhs: Floats, outputs: Floats) -> Complexes:

@@ -56,3 +56,8 @@ class LossCurve:
     def constant(self) -> bool:
         """True where the loss doesn't move with frequency."""
         return self.hertz is None
+
+    @property
+    def zero(self) -> bool:
+        """True where no loss is declared."""
+        return self.hertz is None and float(self.value[0]) == 0.0

@@ -22,7 +22,8 @@ from stresscheck.errors import CheckError
 
 @dataclass(frozen=True, slots=True)
 class Direct:
-    """Sizes at omega = 0. `volt`, `ampere`: [points, branches]; `node`: [points, nodes]; NaN where undecided.
+    """The circuit at omega = 0: signed at points, sizes over boxes. `volt`, `ampere`: [points, branches]; `node`:
+    [points, nodes]; NaN where undecided.
 
     `terminal`: current at the terminals of each drive; `watt`: power that each sends into the circuit, negative where
     it takes power in (over boxes: a bound of its size), [points, sources].
@@ -43,8 +44,8 @@ class Direct:
 
 
 def has_offset(network: Network) -> bool:
-    """True where any drive has a DC offset."""
-    return any(source.dc != 0.0 for source in network.sources)
+    """True where any drive has a direct part: an offset, or a waveform that isn't even."""
+    return any(source.dc != 0.0 or source.waveform.mean != 0.0 for source in network.sources)
 
 
 def carrying(network: Network) -> tuple[int, ...]:
@@ -79,11 +80,16 @@ def direct(network: Network, points: Floats) -> Direct:
     for entry in direct_entries(network, points, points):
         row = form.row(position[entry.places[0][0]])
         matrix[:, row, row] -= entry.low
-    rhs = excitation(form, tuple(range(len(network.sources))), direct=True).sum(axis=1, keepdims=True)
-    x = solve_batch(matrix, np.repeat(rhs[None].astype(np.complex128), len(points), axis=0))[:, :, 0].real.astype(
-        np.float64
-    )
-    return _read(network, form, x)
+    level = _levels(network, points)
+    rhs = np.einsum("us,ps->pu", excitation(form, tuple(range(len(network.sources)))), level)
+    x = solve_batch(matrix, rhs[:, :, None].astype(np.complex128))[:, :, 0].real.astype(np.float64)
+    outputs = x @ _difference_readings(network, form).T + level @ _constants(network, form)
+    return _sorted(network, form, outputs)
+
+
+def _levels(network: Network, points: Floats) -> Floats:
+    """Direct part of every drive [V or A], [points, sources]."""
+    return np.stack([source.direct_level(points[:, source.level_axis]) for source in network.sources], axis=1)
 
 
 def direct_bounds(network: Network, lows: Floats, highs: Floats) -> Direct:
@@ -91,21 +97,30 @@ def direct_bounds(network: Network, lows: Floats, highs: Floats) -> Direct:
     if not has_offset(network):
         return Direct.nothing(network, len(lows))
     form = _direct_frame(network)
-    rhs = excitation(form, tuple(range(len(network.sources))), direct=True).sum(axis=1, keepdims=True)
+    rhs = excitation(form, tuple(range(len(network.sources))))
     spread = _difference_readings(network, form)
     entries = direct_entries(network, lows, highs)
     moving = tuple(entry for entry in entries if entry.varies)
     found = corners(form, entries, moving, rhs, spread, Pieces(np.zeros((len(lows), 1))), 0)
-    numerator = flat(found.numerator[..., 0], 1) + flat(found.denominator, 0)[:, :, None] * _constants(network, form)
-    bound = corner_rule(np.abs(numerator), flat(found.denominator, 0))
-    bound = np.repeat(bound, len(lows) // len(bound), axis=0) * (1.0 + MARGIN)
+    times = len(lows) // len(found.denominator)
+    below = np.repeat(flat(found.denominator, 0), times, axis=0)
+    numerator = (
+        np.repeat(flat(found.numerator, 2), times, axis=0) + below[:, :, None, None] * _constants(network, form).T
+    )
+    ends = np.stack([_levels(network, lows), _levels(network, highs)])
+    if np.array_equal(ends[0], ends[1]):
+        size = np.abs(np.einsum("bcos,bs->bco", numerator, ends[0]))
+    else:
+        size = np.einsum("bcos,bs->bco", np.abs(numerator), np.abs(ends).max(axis=0))
+    bound = corner_rule(size, below) * (1.0 + MARGIN)
     return _sorted(network, form, bound)
 
 
 def _direct_frame(network: Network) -> Frame:
     group = groups(network)
     for source in network.sources:
-        if source.branch is None and source.dc != 0.0 and group[source.first] != group[source.second]:
+        direct = source.dc != 0.0 or source.waveform.mean != 0.0
+        if source.branch is None and direct and group[source.first] != group[source.second]:
             raise CheckError(f"the direct current of {source.name} has no path")
     grounded = tuple(group.index(number) for number in sorted(set(group)) if number != group[GROUND])
     return frame(network, carrying(network), grounded)
@@ -138,19 +153,13 @@ def _across(out: Floats, row: int, first: int, second: int) -> None:
 
 
 def _constants(network: Network, form: Frame) -> Floats:
-    """Constant part of each output: the direct current of current drives."""
+    """What each drive adds to each output by itself: the current of current drives, [sources, outputs]."""
     start = len(form.branches) + len(network.branches) + len(network.nodes)
-    out = np.zeros(start + 2 * len(network.sources))
+    out = np.zeros((len(network.sources), start + 2 * len(network.sources)))
     for index, source in enumerate(network.sources):
         if source.branch is None:
-            out[start + index] = source.dc
+            out[index, start + index] = 1.0
     return out
-
-
-def _read(network: Network, form: Frame, x: Floats) -> Direct:
-    outputs = x @ _difference_readings(network, form).T + _constants(network, form)
-    found = _sorted(network, form, outputs)
-    return Direct(np.abs(found.volt), np.abs(found.ampere), np.abs(found.node), np.abs(found.terminal), found.watt)
 
 
 def _sorted(network: Network, form: Frame, outputs: Floats) -> Direct:

@@ -6,13 +6,14 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from stresscheck.arrays import Complexes, Flags, Floats, Indices
-from stresscheck.circuit.corner_rule import MARGIN
-from stresscheck.circuit.corners import MOST_DEGREE, MOST_NUMBERS, Corners, Pieces, corner_count, corners
+from stresscheck.arrays import Flags, Floats
+from stresscheck.circuit.corner_rule import MARGIN, corner_rule
+from stresscheck.circuit.corners import Pieces, flat
 from stresscheck.circuit.entries import Entry, entries
-from stresscheck.circuit.influence import influence
-from stresscheck.circuit.laws import TAU, CapacitorLaw, ResistorLaw
+from stresscheck.circuit.laws import TAU, ResistorLaw
 from stresscheck.circuit.network import GROUND, Line, Network
+from stresscheck.circuit.output_groups import OutputGroup, degree_of, output_groups
+from stresscheck.circuit.phasors import weight_of
 from stresscheck.circuit.rules import (
     by_power,
     chain_root,
@@ -22,7 +23,6 @@ from stresscheck.circuit.rules import (
     series_with,
     tuned_bound,
 )
-from stresscheck.circuit.tableau import all_branches, excitation, frame, readings
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,23 +43,11 @@ class Need:
 
 
 @dataclass(frozen=True, slots=True)
-class OutputGroup:
-    """Outputs that depend on the same entries, with their corners. `rows`: their numbers in `readings` order;
-    `combined`: their numerators under the line's drives, [boxes, frequencies, *fans, outputs]; `ports`: the branches
-    whose unit series voltages are the columns of `corners` behind the sources."""
-
-    rows: Indices
-    corners: Corners
-    combined: Complexes
-    ports: tuple[int, ...]
-
-
-@dataclass(frozen=True, slots=True)
 class LineBounds:
     """Bounds of peak sizes over boxes at one line: `ampere`, `volt` [boxes, branches], `node` [boxes, nodes],
     `terminal` [boxes, sources of the line]: current at the terminals of each drive; `root_watt`, `root_var`
     [boxes, branches]: of sqrt(R) I and sqrt(|X|) I. Infinite where none is found. `groups` let a caller choose where
-    to split."""
+    to split. `around` [boxes, all outputs]: of each response less a constant times its drive, where that was asked."""
 
     ampere: Floats
     volt: Floats
@@ -68,6 +56,7 @@ class LineBounds:
     root_watt: Floats
     root_var: Floats
     groups: tuple[OutputGroup, ...]
+    around: Floats | None = None
 
     @property
     def none_tried(self) -> bool:
@@ -75,16 +64,25 @@ class LineBounds:
         return not self.groups
 
 
-def line_bounds(network: Network, line: Line, lows: Floats, highs: Floats, need: Need | None = None) -> LineBounds:
+def line_bounds(
+    network: Network,
+    line: Line,
+    lows: Floats,
+    highs: Floats,
+    need: Need | None = None,
+    constant: Floats | None = None,
+) -> LineBounds:
     """Bound the responses asked for over boxes [lows, highs], each shape [boxes, axes], SI; all without `need`.
+
+    constant [outputs and terminals of the line's only drive]: what to take from each response for `around`.
 
     Never below the true maximum over a box: each bound is the smallest that the rules of `rules` give, plus a
     relative margin for rounding. A response whose box has more corners than memory is meant for gets none.
     """
     need = need or Need.everything(network)
-    omega = TAU * lows[:, line.frequency_axis], TAU * highs[:, line.frequency_axis]
-    pieces = Pieces.of(*omega, _degree(network))
-    band = lows[:, line.frequency_axis], highs[:, line.frequency_axis]
+    omega = line.omega(lows), line.omega(highs)
+    pieces = Pieces.of(*omega, degree_of(network))
+    band = line.hertz(lows), line.hertz(highs)
     found = entries(
         network,
         pieces.rows(lows),
@@ -92,12 +90,35 @@ def line_bounds(network: Network, line: Line, lows: Floats, highs: Floats, need:
         pieces.omega.reshape(-1),
         (pieces.rows(band[0]), pieces.rows(band[1])),
     )
-    groups = _groups(network, line, found, pieces, lows, highs, _rows_to_solve(network, line, need))
+    groups = output_groups(network, line, found, pieces, lows, highs, _rows_to_solve(network, line, need))
     scale = _single_level(network, line, highs)
-    outputs = 2 * len(network.branches) + len(network.nodes) + len(line.sources)
-    bound = np.full((len(lows), outputs), np.inf)
     delivered = network.sources[line.sources[0]].basis == "delivered_power"
     ohm = _resistance(network, found, pieces)
+    bound = _unit_bounds(network, line, need, found, pieces, groups, ohm, delivered) * scale[:, None] * (1.0 + MARGIN)
+    count, nodes = len(network.branches), len(network.nodes)
+    watt, var = _roots(network, found, groups, bound, scale, delivered, need, band, ohm)
+    around = None
+    if constant is not None:
+        around = np.fmin(bound + np.abs(constant) * scale[:, None], _around(groups, bound, constant, scale))
+    return LineBounds(
+        bound[:, :count], bound[:, count : 2 * count], bound[:, 2 * count : 2 * count + nodes],
+        bound[:, 2 * count + nodes :], watt, var, groups, around,
+    )  # fmt: skip
+
+
+def _unit_bounds(
+    network: Network,
+    line: Line,
+    need: Need,
+    found: tuple[Entry, ...],
+    pieces: Pieces,
+    groups: tuple[OutputGroup, ...],
+    ohm: tuple[Floats, Floats],
+    delivered: bool,
+) -> Floats:
+    """The smallest bound that the rules give per unit of the only drive, or with the levels of several in it."""
+    outputs = 2 * len(network.branches) + len(network.nodes) + len(line.sources)
+    bound = np.full((len(ohm[0]), outputs), np.inf)
     wanted = np.concatenate(
         [need.outputs[: outputs - len(line.sources)], need.outputs[-len(network.sources) :][list(line.sources)]]
     )
@@ -116,61 +137,17 @@ def line_bounds(network: Network, line: Line, lows: Floats, highs: Floats, need:
             _by_ohm(network, found, pieces, bound)
             own = network.sources[0].branch
             bound[:, -1] = np.fmin(bound[:, -1], bound[:, own])
-    bound *= scale[:, None] * (1.0 + MARGIN)
-    count, nodes = len(network.branches), len(network.nodes)
-    ampere = bound[:, :count]
-    watt, var = _roots(network, found, groups, bound, scale, delivered, need, band, ohm)
-    return LineBounds(
-        ampere, bound[:, count : 2 * count], bound[:, 2 * count : 2 * count + nodes],
-        bound[:, 2 * count + nodes :], watt, var, groups,
-    )  # fmt: skip
+    return bound
 
 
-def _groups(
-    network: Network,
-    line: Line,
-    found: tuple[Entry, ...],
-    pieces: Pieces,
-    lows: Floats,
-    highs: Floats,
-    solve: list[int],
-) -> tuple[OutputGroup, ...]:
-    """Sort the outputs by the entries they depend on; evaluate the corners of each group."""
-    form = frame(network, all_branches(network))
-    rhs, read = excitation(form, line.sources), readings(form)
-    moving = [number for number, entry in enumerate(found) if entry.varies]
-    read = np.concatenate([read, _terminal_readings(network, line, form.size)])
-    flags = influence(form, found, rhs, read)[:, moving]
-    patterns: dict[tuple[bool, ...], list[int]] = {}
-    for row in solve:
-        patterns.setdefault(tuple(flags[row].tolist()), []).append(row)
-    groups = []
-    for pattern, rows in patterns.items():
-        mine = tuple(found[n] for n, flag in zip(moving, pattern, strict=True) if flag)
-        ports = tuple(e.places[0][0] for e in mine if e.degree == 1 and np.any(e.low.imag != e.high.imag))
-        numbers = corner_count(mine, pieces.count) * len(rows) * (len(line.sources) + len(ports))
-        if numbers > MOST_NUMBERS or pieces.count > MOST_DEGREE:
-            continue
-        port_rhs = np.zeros((form.size, len(ports)))
-        for column, branch in enumerate(ports):
-            port_rhs[form.row(branch), column] = 1.0
-        columns = np.concatenate([rhs, port_rhs], axis=1)
-        got = corners(form, found, mine, columns, read[rows], pieces, _capacitors(network))
-        combined = _combined(network, line, lows, highs, got, np.array(rows))
-        if combined.ndim > got.numerator.ndim - 1:
-            got = _with_pick_dimension(got)
-        groups.append(OutputGroup(np.array(rows), got, combined, ports))
-    return tuple(groups)
-
-
-def _degree(network: Network) -> int:
-    """Degree in omega of determinant and numerators: one for each reactive branch."""
-    return sum(not isinstance(branch.law, ResistorLaw) for branch in network.branches)
-
-
-def _capacitors(network: Network) -> int:
-    """How many rows of the tableau count as multiplied by omega."""
-    return sum(isinstance(branch.law, CapacitorLaw) for branch in network.branches)
+def _around(groups: tuple[OutputGroup, ...], bound: Floats, constant: Floats, scale: Floats) -> Floats:
+    """Bound of |N/D - c| for a constant c of each response: N - cD is of the same kind as N."""
+    out = np.full_like(bound, np.inf)
+    for group in groups:
+        below = group.corners.denominator
+        away = np.abs(flat(group.combined - constant[group.rows] * below[..., None], 1))
+        out[:, group.rows] = corner_rule(away, flat(below, 0))
+    return np.asarray(out * scale[:, None] * (1.0 + MARGIN))
 
 
 def _rows_to_solve(network: Network, line: Line, need: Need) -> list[int]:
@@ -180,23 +157,13 @@ def _rows_to_solve(network: Network, line: Line, need: Need) -> list[int]:
     return rows + [2 * count + nodes + place for place in range(len(line.sources))]
 
 
-def _terminal_readings(network: Network, line: Line, size: int) -> Floats:
-    """Current at the terminals of each drive of the line, as far as it is an unknown: the shunt's, or the branch's."""
-    out = np.zeros((len(line.sources), size))
-    for place, index in enumerate(line.sources):
-        source = network.sources[index]
-        branch = source.branch if source.branch is not None else network.branch_of(source.name, "source")
-        if branch is not None:
-            out[place, len(network.nodes) + branch] = -1.0
-    return out
-
-
 def _single_level(network: Network, line: Line, highs: Floats) -> Floats:
     """Largest peak level of a line's only drive; 1 where several drives are combined corner by corner instead."""
     if len(line.sources) > 1:
         return np.ones(len(highs))
     source = network.sources[line.sources[0]]
-    return _peak_level(source.basis, highs[:, source.level_axis], source.ohm, source.level_scale)
+    size = abs(weight_of(network, line, 0))
+    return size * _peak_level(source.basis, highs[:, source.level_axis], source.ohm, source.level_scale)
 
 
 def _peak_level(basis: str, level: Floats, ohm: float, scale: float) -> Floats:
@@ -206,50 +173,6 @@ def _peak_level(basis: str, level: Floats, ohm: float, scale: float) -> Floats:
     if basis == "delivered_power":
         return np.sqrt(2.0 * level)
     return level * scale
-
-
-def _combined(network: Network, line: Line, lows: Floats, highs: Floats, got: Corners, rows: Indices) -> Complexes:
-    """Numerators of a group's outputs under the line's drives, [boxes, frequencies, *fans, (picks,) outputs].
-
-    One drive: unit level. Several: one more dimension with every combination of their smallest and largest levels.
-    A current drive's terminal current is its level less what its own resistance takes.
-    """
-    sources = [network.sources[index] for index in line.sources]
-    first = len(network.nodes) + 2 * len(network.branches)
-    levels: Complexes = np.ones((len(lows), 1, 1), dtype=np.complex128)
-    if len(sources) > 1:
-        levels = _level_picks(network, line, lows, highs)
-    numerator = got.numerator[..., : len(sources)]
-    picks = []
-    for pick in range(levels.shape[1]):
-        level = levels[:, pick].reshape(len(levels), *[1] * (numerator.ndim - 2), len(sources))
-        total = (numerator * level).sum(axis=-1)
-        for place, source in enumerate(sources):
-            if source.branch is None:
-                at = np.flatnonzero(rows == first + place)
-                total[..., at] += level[..., place] * got.denominator[..., None]
-        picks.append(total)
-    return picks[0] if len(picks) == 1 else np.stack(picks, axis=-2)
-
-
-def _level_picks(network: Network, line: Line, lows: Floats, highs: Floats) -> Complexes:
-    """Complex levels of several drives at all combinations of their ends, [boxes, picks, sources]."""
-    ends = []
-    for index in line.sources:
-        source = network.sources[index]
-        phase = np.exp(1j * source.phase)
-        low, high = lows[:, source.level_axis], highs[:, source.level_axis]
-        both = [high] if np.array_equal(low, high) else [low, high]
-        ends.append([phase * source.level_scale * end for end in both])
-    picks: list[list[Complexes]] = [[]]
-    for choice in ends:
-        picks = [[*pick, end] for pick in picks for end in choice]
-    return np.stack([np.stack(pick, axis=1) for pick in picks], axis=1)
-
-
-def _with_pick_dimension(got: Corners) -> Corners:
-    """Give the corners the dimension of the drives' levels, of size one, so that shapes go together."""
-    return Corners(got.denominator[..., None], got.numerator[..., None, :, :], got.moving)
 
 
 def _by_currents(network: Network, line: Line, bound: Floats) -> None:

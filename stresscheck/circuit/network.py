@@ -7,8 +7,12 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+import numpy as np
+
+from stresscheck.arrays import Floats
 from stresscheck.circuit.axes import Axes
-from stresscheck.circuit.laws import Law
+from stresscheck.circuit.laws import TAU, Law
+from stresscheck.circuit.waveform import SINE, Waveform
 
 GROUND = -1
 
@@ -57,7 +61,8 @@ class Source:
     """One drive: a voltage in its branch, or a current into `first` (out of `second`).
 
     `basis`: "peak" (level is a peak volt or ampere), "available_power" or "delivered_power" (level in watt).
-    `phase` in radian. `line` is the index of the spectral line it drives. `dc` is its offset in volt or ampere.
+    `phase` in radian. `line` is the index of the line of its own frequency, or of its lowest harmonic. Its direct part
+    is `dc` (the offset, volt or ampere) and, for a square that isn't even, its level times the waveform's mean.
     """
 
     name: str
@@ -72,11 +77,20 @@ class Source:
     phase: float
     line: int
     dc: float
+    waveform: Waveform = SINE
+
+    def direct_level(self, level: Floats) -> Floats:
+        """Direct part [V or A] at each level of the drive: offset, and the mean of its waveform."""
+        mean = self.waveform.mean
+        return np.asarray(self.dc + mean * self.level_scale * level if mean else np.full_like(level, self.dc))
 
 
 @dataclass(frozen=True, slots=True)
 class Line:
     """One frequency at which the circuit is solved: drives of the same frequency and stated phase share it.
+
+    `order`: times the frequency of its axis; `weights`: complex size of each source's harmonic, relative to its level
+    and with its phase. `weighty`: it carries a noticeable part of some stress, so limits are read at its frequency too.
 
     `group`: lines whose frequencies may coincide without a stated phase share a group; their amplitudes add,
     in RMS too, because any phase is possible.
@@ -85,6 +99,17 @@ class Line:
     frequency_axis: int
     sources: tuple[int, ...]
     group: int
+    order: int = 1
+    weights: tuple[complex, ...] = ()
+    weighty: bool = True
+
+    def hertz(self, points: Floats) -> Floats:
+        """Frequency at points [points, axes], [Hz]."""
+        return np.asarray(self.order * points[:, self.frequency_axis])
+
+    def omega(self, points: Floats) -> Floats:
+        """Angular frequency at points [points, axes], [rad/s]."""
+        return np.asarray(TAU * self.order * points[:, self.frequency_axis])
 
 
 @dataclass(frozen=True, slots=True)
@@ -98,6 +123,24 @@ class Network:
     transformers: tuple[Transformer, ...]
     sources: tuple[Source, ...]
     lines: tuple[Line, ...]
+    left_out: float = 0.0
+    """Largest part of any stress that the harmonics left out come to, at the points where that was looked at."""
+
+    def band_of(self, line: Line) -> tuple[float, float]:
+        """Lowest and highest frequency of a line [Hz]."""
+        axis = self.axes.items[line.frequency_axis]
+        return line.order * axis.low, line.order * axis.high
+
+    def weighty_bands(self) -> list[tuple[float, float]]:
+        """Bands [Hz] of the lines that carry a noticeable part of some stress."""
+        return [self.band_of(line) for line in self.lines if line.weighty]
+
+    def courses(self) -> tuple[tuple[int, ...], ...]:
+        """Numbers of the lines that belong to one frequency: fundamentals with their harmonics."""
+        homes: dict[int, list[int]] = {}
+        for number, line in enumerate(self.lines):
+            homes.setdefault(line.frequency_axis, []).append(number)
+        return tuple(tuple(numbers) for numbers in homes.values())
 
     def branch_of(self, part: str, role: str = "main") -> int | None:
         """Index of a part's branch with this role, None where it has none."""

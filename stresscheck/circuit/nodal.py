@@ -12,7 +12,6 @@ import numpy as np
 
 from stresscheck.arrays import Complexes, Floats
 from stresscheck.circuit.elimination import solve_columns
-from stresscheck.circuit.laws import TAU
 from stresscheck.circuit.network import GROUND, Line, Network
 
 
@@ -57,7 +56,7 @@ def respond(network: Network, points: Floats, line: Line, ports: tuple[int, ...]
     points: shape [points, axes], SI. A row that can't be solved is NaN.
     Source: modified nodal analysis, circuit theory.
     """
-    omega = TAU * points[:, line.frequency_axis]
+    omega = line.omega(points)
     ohm = branch_ohm(network, points, omega)
     layout = _Layout(network, ohm)
     emf, injected = _excitations(network, line, ports)

@@ -32,9 +32,7 @@ def phasors(network: Network, points: Floats, line: Line) -> Phasors:
     that P enters the circuit behind the source resistance. NaN where a point can't be solved.
     """
     unit = respond(network, points, line)
-    level = np.stack(
-        [amplitude(network, index, points, unit, column) for column, index in enumerate(line.sources)], axis=1
-    )
+    level = np.stack([amplitude(network, line, points, unit, column) for column in range(len(line.sources))], axis=1)
     return Phasors(
         _combine(unit.volt, level),
         _combine(unit.ampere, level),
@@ -45,12 +43,19 @@ def phasors(network: Network, points: Floats, line: Line) -> Phasors:
     )
 
 
-def amplitude(network: Network, index: int, points: Floats, unit: Responses, column: int) -> Complexes:
-    """Complex peak level of one source at each point [V or A], shape [points]."""
-    source = network.sources[index]
+def weight_of(network: Network, line: Line, place: int) -> complex:
+    """Complex size of a line's place-th source relative to its level, its phase included."""
+    if line.weights:
+        return line.weights[place]
+    return complex(np.exp(1j * network.sources[line.sources[place]].phase))
+
+
+def amplitude(network: Network, line: Line, points: Floats, unit: Responses, column: int) -> Complexes:
+    """Complex peak level of a line's source at each point [V or A], shape [points]."""
+    source = network.sources[line.sources[column]]
     level = points[:, source.level_axis]
     if source.basis == "peak":
-        return np.asarray(level * source.level_scale * np.exp(1j * source.phase))
+        return np.asarray(level * source.level_scale * weight_of(network, line, column))
     if source.basis == "available_power":
         return np.sqrt(8.0 * level * source.ohm) + 0j
     return np.sqrt(level / _unit_watt(source, unit, column)) + 0j

@@ -14,7 +14,7 @@ from stresscheck.circuit.laws import ResistorLaw
 from stresscheck.circuit.network import Network
 
 if TYPE_CHECKING:
-    from stresscheck.circuit.enclosure import OutputGroup
+    from stresscheck.circuit.output_groups import OutputGroup
 
 
 LOOSE = 1.01

@@ -7,10 +7,11 @@ import numpy as np
 from stresscheck.arrays import Complexes, Floats, Indices
 from stresscheck.circuit.corner_rule import angle_span, corner_rule
 from stresscheck.circuit.corners import flat
-from stresscheck.circuit.enclosure import LineBounds, OutputGroup
+from stresscheck.circuit.enclosure import LineBounds
 from stresscheck.circuit.entries import Entry
 from stresscheck.circuit.laws import CapacitorLaw
 from stresscheck.circuit.network import Line, Network
+from stresscheck.circuit.output_groups import OutputGroup
 
 STEPS = 8
 WORTH = 0.99

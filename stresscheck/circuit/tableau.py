@@ -57,20 +57,19 @@ def _tie(matrix: Floats, row: int, first: int, second: int, ratio: float) -> Non
             matrix[row, node] += sign
 
 
-def excitation(form: Frame, sources: tuple[int, ...], direct: bool = False) -> Floats:
-    """Right-hand sides for unit drives, one column per source; with `direct`, for their offsets instead."""
+def excitation(form: Frame, sources: tuple[int, ...]) -> Floats:
+    """Right-hand sides for unit drives, one column per source."""
     network = form.network
     out = np.zeros((form.size, len(sources)))
     place = {index: form.row(position) for position, index in enumerate(form.branches)}
     for column, index in enumerate(sources):
         source = network.sources[index]
-        size = source.dc if direct else 1.0
         if source.branch is not None:
-            out[place[source.branch], column] = size
+            out[place[source.branch], column] = 1.0
             continue
         for node, sign in ((source.first, 1.0), (source.second, -1.0)):
             if node != GROUND:
-                out[node, column] += sign * size
+                out[node, column] += sign
     return out
 
 

@@ -51,7 +51,7 @@ def stationary_values(network: Network, line: Line, points: Floats, axis: int, o
         return np.full((len(points), 3), np.nan)
     seen = respond(network, points, line, ports=(branch,))
     rows = np.arange(len(points))
-    level = np.stack([amplitude(network, s, points, seen, column) for column, s in enumerate(line.sources)], axis=1)
+    level = np.stack([amplitude(network, line, points, seen, column) for column in range(len(line.sources))], axis=1)
     everything = np.concatenate([seen.ampere, seen.volt, seen.node], axis=1)[rows, outputs]
     sources = len(line.sources)
     y0 = np.einsum("ps,ps->p", everything[:, :sources], level)

@@ -225,6 +225,14 @@ class Design(Table):
         """The circuit in one state; KeyError for an unknown one."""
         return self if name == "normal" else self._in_state[name]
 
+    def with_fault(self, name: str, how: str) -> Design:
+        """The circuit as written with one more part "open" or "short"; the file's states are left behind."""
+        other = self.model_copy()
+        gone = frozenset({name})
+        other._opened = self._opened | gone if how == "open" else self._opened
+        other._shorted = self._shorted | gone if how == "short" else self._shorted
+        return other
+
     def kind_of(self, name: str) -> str:
         """Which table a part stands in; KeyError where there is none of this name."""
         for kind in PART_KINDS:

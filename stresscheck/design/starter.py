@@ -20,7 +20,7 @@ peak = "5 V"                     # exactly one of peak, rms, peak_to_peak, avail
 frequency = ["98 kHz", "102 kHz"]
 source_resistance = "0.5 ohm"
 [drive.generator.rating]
-current_peak = "10 A"
+current_peak = "15 A"
 
 [inductor.L1]
 between = ["in", "top"]

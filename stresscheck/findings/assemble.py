@@ -17,17 +17,21 @@ from stresscheck.errors import CheckError
 from stresscheck.findings.checks import Check, checks_of, part_notes
 from stresscheck.findings.explain import carriers_of, reason_for, steps_for
 from stresscheck.findings.finding import Finding, Place, Proof
+from stresscheck.findings.gated import gate_of, gated_worst
 from stresscheck.findings.judge import judge
 from stresscheck.findings.self_resonance import remark
 from stresscheck.findings.worst import Asked, Limiting, Problem, Worst, worst_case
 from stresscheck.limits.limit import Limit
 from stresscheck.limits.policy import Policy
+from stresscheck.stress.energy import CIRCUIT, QUANTITY
 from stresscheck.stress.stresses import PartNotes
+from stresscheck.transient.gated import Gate, check_gated
 
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
 
 Stop = Callable[[bool], bool]
+NOT_SET = "the voltage or current isn't set by the circuit, or no solution is vouched for"
 WARM = 300.0
 """Any temperature [K]: only asked whether knowing one makes a difference."""
 
@@ -36,7 +40,8 @@ WARM = 300.0
 class StateFindings:
     """Findings of one state, and what the cautions need: the network, and each node's worst point.
 
-    `network` None where the state couldn't be built; `why` says so then.
+    `network` None where the state couldn't be built; `why` says so then. `steady`: what the search of the steady state
+    found, for the events that start from it or end in it.
     """
 
     state: str
@@ -44,6 +49,22 @@ class StateFindings:
     network: Network | None
     worst: Mapping[tuple[str, str], tuple[float, Floats]]
     why: str = ""
+    steady: Steady | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Steady:
+    """Checks of a state, their functions and what was found. `column`: function of each check, -1 without;
+    `smallest`: smallest allowed value over the band, NaN without; `silent`: where a rating says nothing."""
+
+    kind: str
+    checks: tuple[Check, ...]
+    notes: Mapping[str, PartNotes]
+    column: tuple[int, ...]
+    worst: Worst
+    smallest: tuple[float, ...]
+    silent: tuple[str, ...]
+    energy: int
 
 
 @dataclass(slots=True)
@@ -54,6 +75,7 @@ class _Plan:
     limits: list[float] = field(default_factory=list)
     stress: list[int] = field(default_factory=list)
     use: list[int] = field(default_factory=list)
+    energy: int = -1
 
     def add(self, ask: Asked, limit: float) -> int:
         self.asked.append(ask)
@@ -65,13 +87,11 @@ def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, 
     """Search, bound and judge every check of a state. `kind`: "operating", or "fault" (full ratings)."""
     full = kind == "fault"
     try:
-        network = build(design)
-        check_levels(network)
-        _check_solvable(network)
+        network, gate = _built(design)
     except CheckError as error:
         checks = checks_of(design, policy, {}, full=full)
-        lost = tuple(_lost(check, state, kind, str(error)) for check in checks)
-        return StateFindings(state, lost, None, {}, str(error))
+        none = tuple(lost(check, state, kind, str(error)) for check in checks)
+        return StateFindings(state, none, None, {}, str(error))
     notes = part_notes(design)
     checks = checks_of(design, policy, {}, full=full)
     warm = _need_temperature(design, policy, checks, notes, full=full)
@@ -82,7 +102,7 @@ def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, 
     problem = Problem(network, notes, plan.asked)
     # Nothing to decide where there is no limit: such a stress only has its gap narrowed, with the others' patience.
     limits = np.array([limit if math.isfinite(limit) else math.inf for limit in plan.limits])
-    worst = worst_case(problem, gap, limits, stop)
+    worst = worst_case(problem, gap, limits, stop) if gate is None else gated_worst(problem, gate, gap, limits, stop)
     findings = tuple(
         _finding(design, network, check, state, kind, plan, worst, index, gap) for index, check in enumerate(checks)
     )
@@ -91,7 +111,31 @@ def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, 
         for n, ask in enumerate(plan.asked)
         if ask.limit is None
     }
-    return StateFindings(state, findings, network, seen)
+    steady = None if gate is not None else _steady(network, kind, checks, notes, plan, worst)
+    return StateFindings(state, findings, network, seen, steady=steady)
+
+
+def _built(design: Design) -> tuple[Network, Gate | None]:
+    """The network of a state and its gating; CheckError where it can't be solved."""
+    network = build(design)
+    check_levels(network)
+    _check_solvable(network)
+    gate = gate_of(design, network)
+    if gate is not None:
+        check_gated(network)
+    return network, gate
+
+
+def _steady(
+    network: Network, kind: str, checks: list[Check], notes: Mapping[str, PartNotes], plan: _Plan, worst: Worst
+) -> Steady:
+    """What events need of the steady search."""
+    bands = network.weighty_bands()
+    return Steady(
+        kind, tuple(checks), notes, tuple(plan.stress), worst,
+        tuple(_smallest(check.limits.limits, bands) for check in checks),
+        tuple(_silent(check, network) for check in checks), plan.energy,
+    )  # fmt: skip
 
 
 def _check_solvable(network: Network) -> None:
@@ -136,13 +180,15 @@ def _upper_temperatures(
 def _plan(network: Network, checks: list[Check]) -> _Plan:
     """One function per computable check, one more where its limit moves over the band; and every node's voltage."""
     plan = _Plan()
-    bands = [network.axes.items[line.frequency_axis] for line in network.lines]
+    bands = network.weighty_bands()
     for check in checks:
         if check.obstacle:
             plan.stress.append(-1)
             plan.use.append(-1)
             continue
-        constant = all(limit.constant for limit in check.limits.limits) or not any(b.varies for b in bands)
+        constant = all(limit.constant for limit in check.limits.limits) or (
+            len(bands) == 1 and bands[0][0] == bands[0][1]
+        )
         limit = _smallest(check.limits.limits, bands) if constant else math.nan
         plan.stress.append(plan.add(Asked(check.part, check.quantity), limit))
         if constant or not math.isfinite(_smallest(check.limits.limits, bands)):
@@ -152,14 +198,13 @@ def _plan(network: Network, checks: list[Check]) -> _Plan:
             plan.use.append(plan.add(Asked(check.part, check.quantity, moving), 1.0))
     for node in network.nodes:
         plan.add(Asked(f"node:{node}", "voltage_peak", prove=False), math.nan)
+    plan.energy = plan.add(Asked(CIRCUIT, QUANTITY), math.nan)
     return plan
 
 
-def _smallest(limits: tuple[Limit, ...], bands: list) -> float:  # type: ignore[type-arg]
+def _smallest(limits: tuple[Limit, ...], bands: list[tuple[float, float]]) -> float:
     """Smallest allowed value over the bands of all lines; NaN where a limit is silent, or there is none."""
-    values = [
-        float(limit.allowed_smallest(np.array([b.low]), np.array([b.high]))[0]) for limit in limits for b in bands
-    ]
+    values = [float(limit.allowed_smallest(np.array([b[0]]), np.array([b[1]]))[0]) for limit in limits for b in bands]
     return min(values) if values and all(math.isfinite(v) for v in values) else math.nan
 
 
@@ -175,9 +220,8 @@ def _silent(check: Check, network: Network) -> str:
     """Where a rating of the check says nothing within the drives' bands."""
     texts = []
     for limit in check.limits.limits:
-        for line in network.lines:
-            band = network.axes.items[line.frequency_axis]
-            value = limit.allowed_smallest(np.array([band.low]), np.array([band.high]))
+        for low, high in network.weighty_bands():
+            value = limit.allowed_smallest(np.array([low]), np.array([high]))
             if not np.isfinite(value).all() and limit.silent_text() not in texts:
                 texts.append(limit.silent_text())
     return "; ".join(texts)
@@ -196,16 +240,17 @@ def _finding(
 ) -> Finding:
     column = plan.stress[index]
     if column < 0:
-        return _lost(check, state, kind, check.obstacle)
+        return lost(check, state, kind, check.obstacle)
     use = plan.use[index]
     point = worst.peaks.point[use if use >= 0 else column]
     if not np.isfinite(worst.peaks.value[column]):
-        return _lost(
-            check, state, kind, "the voltage or current isn't set by the circuit, or no solution is vouched for"
-        )
+        return lost(check, state, kind, NOT_SET)
     problem = Problem(network, part_notes(design), [Asked(check.part, check.quantity)])
-    stress = float(worst.peaks.value[column]) if use < 0 else float(problem.values(point[None])[0, 0])
-    hertz = float(point[network.lines[0].frequency_axis])
+    if gate_of(design, network) is not None:
+        point, stress = worst.peaks.point[column], float(worst.peaks.value[column])
+    else:
+        stress = float(worst.peaks.value[column]) if use < 0 else float(problem.values(point[None])[0, 0])
+    hertz = float(network.lines[0].hertz(point[None])[0])
     bound = worst.bounds.bound[column] if math.isfinite(worst.bounds.bound[column]) else None
     silent = _silent(check, network)
     bound_use = _bound_use(worst, plan, index, use, column)
@@ -260,7 +305,7 @@ def _method(network: Network, worst: Worst) -> str:
     return "corner rule over boxes, split until every gap was closed"
 
 
-def _lost(check: Check, state: str, kind: str, why: str) -> Finding:
+def lost(check: Check, state: str, kind: str, why: str) -> Finding:
     """A check that can't be made."""
     result = judge(check.limits, "", None, None, 0.0, why)
     limit = result.limit

@@ -92,31 +92,16 @@ def checks_of(design: Design, policy: Policy, kelvin: Mapping[str, float], *, fu
 def _declared_only(design: Design, found: list[Check]) -> list[Check]:
     """Checks that the file asks for and that don't exist yet: said, not passed over in silence."""
     none = PartLimits((), False, "", "not-checked")
-    out = [
+    return [
         Check(name, kind, "voltage_peak", "V", none, f"the check of a {kind} isn't made yet")
         for kind in ("spacing", "probe")
         for name in getattr(design, kind)
     ]
-    for name, drive in present(design, "drive"):
-        if drive.any_waveform:
-            why = f"any_waveform of drive {name}: the bound for every waveform isn't computed yet"
-            out += [
-                Check(check.part, check.kind, check.quantity, check.unit, check.limits, why, "any-waveform")
-                for check in found
-                if check.quantity in ("voltage_peak", "current_peak") and check.kind != "drive"
-            ]
-    return out
 
 
 def unavailable(design: Design) -> list[str]:
     """What the file declares that changes every stress and that isn't computed."""
     found = []
-    for name, drive in present(design, "drive"):
-        waveform = getattr(drive, "waveform", None) or "sine"
-        if waveform != "sine" or getattr(drive, "harmonics", None):
-            found.append(f"the waveform of drive {name} isn't a sine; only sine drives are computed")
-        if getattr(drive, "gating", None) is not None:
-            found.append(f"drive {name} is gated; only continuous drives are computed")
     for kind in ("capacitor", "inductor", "resistor"):
         for name, part in present(design, kind):
             if part.temperature_coefficient is not None:

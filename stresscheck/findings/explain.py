@@ -50,7 +50,7 @@ def carriers_of(network: Network, point: Floats) -> tuple[str, ...]:
     found = []
     modes = natural_modes(network, point)
     for line in network.lines:
-        hertz = float(point[line.frequency_axis])
+        hertz = float(line.hertz(point[None])[0])
         near = [m for m in modes if distance(m, hertz) <= NEAR]
         if near:
             mode = min(near, key=lambda m: abs(m.hertz - hertz))

@@ -9,7 +9,7 @@ from stresscheck.circuit.laws import TAU
 from stresscheck.circuit.modes import natural_modes
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import phasors
-from stresscheck.stress.sizes import terminal_phasors
+from stresscheck.stress.sizes import terminal_ampere, terminal_volt
 
 IN_PHASE = 1e-9
 """Phase angles below this [rad] count as none."""
@@ -70,8 +70,8 @@ def drive_reports(network: Network, state: str) -> tuple[DriveReport, ...]:
     seen = [phasors(network, network.axes.nominal[None], line) for line in network.lines]
     for index, source in enumerate(network.sources):
         at = seen[source.line]
-        v, i = terminal_phasors(network, index, at)
-        volt, ampere = complex(v[0]), complex(i[0])
+        volt = complex(terminal_volt(network, index, at)[0])
+        ampere = complex(terminal_ampere(network, network.lines[source.line], at)[0, index])
         power = 0.5 * volt * ampere.conjugate()
         if not math.isfinite(abs(power)):
             continue

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field
+from itertools import product
 
 import numpy as np
 
@@ -17,6 +18,8 @@ from stresscheck.search.box import Box, corner_points
 from stresscheck.search.climb import Peaks, climb, merge
 from stresscheck.search.prove import Bounds, Goal, prove
 from stresscheck.search.ridge import along_ridges, gained
+from stresscheck.stress.course_bounds import Settled, settled
+from stresscheck.stress.energy import CIRCUIT
 from stresscheck.stress.needs import needs_of
 from stresscheck.stress.sizes import sizes_at, sizes_over
 from stresscheck.stress.stresses import PartNotes, stresses
@@ -78,10 +81,17 @@ class Problem:
     asked: Sequence[Asked]
     box: Box = field(init=False)
     too_many: bool = False
+    known: Settled | None = None
 
     def __post_init__(self) -> None:
         axes = self.network.axes
         self.box = Box(axes.low, axes.nominal, axes.high)
+
+    def _settled(self) -> Settled:
+        """What is bounded once for the whole box."""
+        if self.known is None:
+            self.known = settled(self.network, needs_of(self.network, self.asked))
+        return self.known
 
     def values(self, points: Floats) -> Floats:
         """Every asked function at points, [points, functions]; in blocks that fit the memory."""
@@ -98,7 +108,7 @@ class Problem:
         for ask in self.asked:
             value = found[ask.part, ask.quantity]
             if ask.limit is not None:
-                hertz = [points[:, line.frequency_axis] for line in self.network.lines]
+                hertz = [line.hertz(points) for line in self.network.lines if line.weighty]
                 value = value / np.min([ask.limit.at(f) for f in hertz], axis=0)
             columns.append(value)
         return np.stack(columns, axis=1)
@@ -106,7 +116,7 @@ class Problem:
     def bounds(self, lows: Floats, highs: Floats, focus: Indices, still: Flags) -> tuple[Floats, Indices]:
         """Bound of the functions still asked for over boxes, and the axis to split each box on."""
         need = needs_of(self.network, [a for a, s in zip(self.asked, still, strict=True) if s])
-        sizes, lines = sizes_over(self.network, lows, highs, need)
+        sizes, lines = sizes_over(self.network, lows, highs, need, self._settled())
         self.too_many = all(line.none_tried for line in lines)
         found = stresses(self.network, self.notes, sizes)
         bound = np.full((len(lows), len(self.asked)), np.inf)
@@ -115,7 +125,7 @@ class Problem:
                 continue
             value = found[ask.part, ask.quantity]
             if ask.limit is not None:
-                bands = [(lows[:, ln.frequency_axis], highs[:, ln.frequency_axis]) for ln in self.network.lines]
+                bands = [(ln.hertz(lows), ln.hertz(highs)) for ln in self.network.lines if ln.weighty]
                 value = value / np.min([ask.limit.smallest(*band) for band in bands], axis=0)
             bound[:, column] = np.where(np.isnan(value), np.inf, value)
         return bound, self._split(sizes.ampere, sizes.volt, lines, lows, highs, focus)
@@ -144,6 +154,9 @@ class Problem:
         count = len(self.network.branches)
         out = []
         for ask in self.asked:
+            if ask.part == CIRCUIT:
+                out.append(self._liveliest())
+                continue
             if ask.part.startswith("node:"):
                 out.append(2 * count + self.network.nodes.index(ask.part[5:]))
                 continue
@@ -154,6 +167,12 @@ class Problem:
             out.append(place + count if by_volt else place)
         return np.array(out, dtype=np.intp)
 
+    def _liveliest(self) -> int:
+        """The current of the capacitor or coil that stores most at nominal values: it stands for the energy."""
+        seen = sizes_at(self.network, self.box.nominal[None])
+        stored = (seen.root_var[: len(self.network.lines), 0] ** 2 / seen.omega[0]).sum(axis=0)
+        return int(stored.argmax())
+
     def candidates(self, points: Floats, target: Indices, axis: int) -> Floats:
         """Values to try on one axis: stationary ones in closed form, else a pattern of shrinking steps."""
         network = self.network
@@ -162,7 +181,7 @@ class Problem:
         tries = []
         coupled = any(branch in (c.first, c.second) for c in network.couplings)
         if branch is not None:
-            tries = [stationary_values(network, line, points, axis, outputs) for line in network.lines]
+            tries = [stationary_values(network, line, points, axis, outputs) for line in network.lines if line.weighty]
         direct = [ask.quantity.startswith(("voltage", "current")) for ask in self.asked]
         if branch is None or coupled or not np.array(direct)[target].all():
             width = self.box.high[axis] - self.box.low[axis]
@@ -184,6 +203,7 @@ class Problem:
                 modes = mode_hertz(self.network, points)
                 if not modes.shape[1]:
                     return points[:, axis : axis + 1]
+                modes = modes / line.order
                 distance = np.where(np.isfinite(modes), np.abs(modes - points[:, axis : axis + 1]), np.inf)
                 return np.take_along_axis(modes, distance.argmin(axis=1)[:, None], axis=1)
         outputs = self.outputs()[target]
@@ -195,17 +215,19 @@ class Problem:
         out = [corners]
         for axis in reactive_axes(self.network):
             for line in self.network.lines:
+                if not line.weighty:
+                    continue
                 tuned = corners.copy()
                 value = tuned_values(self.network, line, corners, axis)
                 tuned[:, axis] = np.where(np.isfinite(value), value, corners[:, axis])
                 out.append(tuned)
-        bands = [ln.frequency_axis for ln in self.network.lines if self.network.band(ln)]
+        bands = [(ln.frequency_axis, ln.order) for ln in self.network.lines if self.network.band(ln) and ln.weighty]
         if bands:
             modes = mode_hertz(self.network, corners)
-            for column in range(modes.shape[1]):
-                at_mode = corners.copy()
-                for axis in bands:
-                    at_mode[:, axis] = np.where(np.isfinite(modes[:, column]), modes[:, column], corners[:, axis])
+            for column, order in product(range(modes.shape[1]), sorted({order for _, order in bands})):
+                at_mode, hertz = corners.copy(), modes[:, column] / order
+                for axis in {axis for axis, n in bands if n == order}:
+                    at_mode[:, axis] = np.where(np.isfinite(hertz), hertz, corners[:, axis])
                 out.append(at_mode)
         return np.asarray(np.clip(np.concatenate(out), self.box.low, self.box.high))
 

@@ -131,7 +131,7 @@ def _figures(finding: Finding) -> str:
     nominal = figures.plain(finding.nominal, finding.unit)
     bound = figures.stress(finding.bound, finding.unit)
     proved = f"no point of the box above {bound}" if finding.bound is not None else "no bound proved"
-    return f"nominal {nominal}; {proved}"
+    return proved if finding.nominal is None else f"nominal {nominal}; {proved}"
 
 
 def where(finding: Finding) -> str:
@@ -163,10 +163,11 @@ def _within(out: Lines, review: Review) -> None:
         return
     out.add()
     out.add(f"within ({len(found)}); bars: # worst found, + bound, | limit", tone="open")
-    for state in dict.fromkeys(f.state for f in found):
-        mine = [f for f in found if f.state == state]
+    for state, event in dict.fromkeys((f.state, f.event) for f in found):
+        mine = [f for f in found if (f.state, f.event) == (state, event)]
         full = ", full ratings" if mine[0].state_kind == "fault" else ""
-        out.add(f"state {state}{full}", indent=2, tone="head")
+        moment = "" if event == "steady" else f", {event}"
+        out.add(f"state {state}{moment}{full}", indent=2, tone="head")
         for finding in mine:
             _compact(out, finding)
         _remarks(out, mine)
@@ -183,7 +184,9 @@ def _compact(out: Lines, finding: Finding) -> None:
     else:
         out.add(f"{name}: {worst} of {allowed}, {figures.room(finding)}", indent=4)
     bound = figures.stress(finding.bound, finding.unit)
-    notes = [f"nominal {figures.plain(finding.nominal, finding.unit)}, bound {bound}"]
+    notes = [f"bound {bound}"]
+    if finding.nominal is not None:
+        notes = [f"nominal {figures.plain(finding.nominal, finding.unit)}, bound {bound}"]
     short = figures.corners_fall_short(finding)
     out.add("; ".join([*notes, short] if short else notes), indent=6, tone="quiet")
 

@@ -9,16 +9,16 @@ from stresscheck.stress.seen import PartSeen, heat, peak, rms
 def inductor_stress(seen: PartSeen, turns: float | None, core_area: float | None) -> dict[str, Floats]:
     """All steady stresses, each of shape [points]; sizes in V, A, T, W.
 
-    current_peak = |DC| + sum of peaks and current_rms with DC, both of the winding; flux_density = L I/(N A) at the
+    current_peak with DC, the largest over time, and current_rms with DC, both of the winding; flux_density = L I/(N A) at the
     peak current, where `turns` N and `core_area` A [m^2] are known; dissipation = R I^2 in the winding and V^2/R in
     the core's parallel resistance. Source: circuit theory.
     """
     main, groups = seen.main, seen.groups
-    current = peak(main.dc_ampere, main.ampere)
+    current = peak(main.dc_ampere, main.ampere_extremes)
     out = {
         "current_peak": current,
         "current_rms": rms(main.dc_ampere, main.ampere, groups),
-        "voltage_peak": peak(main.dc_volt, main.volt),
+        "voltage_peak": peak(main.dc_volt, main.volt_extremes),
         "voltage_rms": rms(main.dc_volt, main.volt, groups),
         "dissipation": _dissipation(seen),
     }

@@ -26,6 +26,9 @@ def needs_of(network: Network, asked: Iterable[Stress]) -> Need:
     outputs = np.zeros(2 * count + nodes + len(network.sources), dtype=np.bool_)
     watt, var = np.zeros(count, dtype=np.bool_), np.zeros(count, dtype=np.bool_)
     for stress in asked:
+        if stress.part == "circuit":
+            outputs[:] = watt[:] = var[:] = True
+            continue
         if stress.part.startswith("node:"):
             outputs[2 * count + network.nodes.index(stress.part[5:])] = True
             continue

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from stresscheck.arrays import Floats
-from stresscheck.stress.seen import PartSeen, heat, peak, rms
+from stresscheck.stress.seen import PartSeen, heat, peak, rms, scaled
 from stresscheck.stress.sharing import Share
 
 
@@ -16,6 +16,6 @@ def resistor_stress(seen: PartSeen, share: Share) -> dict[str, Floats]:
     volt, dc = main.volt * share.volt, main.dc_volt * share.volt
     return {
         "dissipation": heat(main, seen.groups) * share.volt * share.ampere,
-        "voltage_peak": peak(dc, volt),
+        "voltage_peak": peak(dc, scaled(main.volt_extremes, share.volt)),
         "voltage_rms": rms(dc, volt, seen.groups),
     }

@@ -11,9 +11,10 @@ from stresscheck.arrays import Floats
 
 @dataclass(frozen=True, slots=True)
 class BranchSeen:
-    """Peak sizes of one branch. Shapes: [lines, points], DC figures [points].
+    """Peak sizes of one branch. Shapes: [lines, points], DC figures [points], signed where they are exact.
 
-    `root_watt` = sqrt(R) I and `root_var` = sqrt(|X|) I: half their squares are the mean and the reactive power.
+    `volt_extremes`, `ampere_extremes`: largest value over time and of the opposite sign, without DC. `root_watt` =
+    sqrt(R) I and `root_var` = sqrt(|X|) I: half their squares are the mean and the reactive power.
     """
 
     volt: Floats
@@ -22,28 +23,42 @@ class BranchSeen:
     root_var: Floats
     dc_volt: Floats
     dc_ampere: Floats
+    volt_extremes: tuple[Floats, Floats]
+    ampere_extremes: tuple[Floats, Floats]
 
 
 @dataclass(frozen=True, slots=True)
 class PartSeen:
     """One part's branches by role, its value (smallest, largest), and the lines' frequencies.
 
-    `omega`: (smallest, largest) [rad/s], shape [lines, points]; `groups`: line → group of lines that may coincide.
+    `omega`: (smallest, largest) [rad/s], shape [lines, points]; `groups`: line → group of lines that may coincide;
+    `sines`: every drive is one; `scale`: capacitance of the whole bank over that of a unit.
     """
 
     branches: dict[str, BranchSeen]
     value: tuple[Floats, Floats]
     omega: tuple[Floats, Floats]
     groups: tuple[int, ...]
+    sines: bool = True
+    scale: float = 1.0
 
     @property
     def main(self) -> BranchSeen:
         return self.branches["main"]
 
 
-def peak(dc: Floats, lines: Floats) -> Floats:
-    """|DC| plus the sum of the lines' peaks: the largest value whatever the phases, shape [points]."""
-    return np.asarray(dc + lines.sum(axis=0))
+def peak(dc: Floats, extremes: tuple[Floats, Floats]) -> Floats:
+    """Largest size of DC and course together: max(|DC + high|, |DC - low|), shape [points].
+
+    extremes: (high, low), largest value and largest of the opposite sign; drives of different frequencies added.
+    """
+    high, low = extremes
+    return np.maximum(np.abs(dc + high), np.abs(dc - low))
+
+
+def scaled(extremes: tuple[Floats, Floats], factor: float) -> tuple[Floats, Floats]:
+    """Both extremes times a factor."""
+    return extremes[0] * factor, extremes[1] * factor
 
 
 def square_mean(dc: Floats, lines: Floats, groups: tuple[int, ...]) -> Floats:

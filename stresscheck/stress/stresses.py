@@ -8,9 +8,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from stresscheck.arrays import Floats
+from stresscheck.circuit.laws import CapacitorLaw
 from stresscheck.circuit.network import Network
 from stresscheck.stress.capacitor import capacitor_stress
 from stresscheck.stress.drive import drive_stress
+from stresscheck.stress.energy import CIRCUIT, QUANTITY, root_energy
 from stresscheck.stress.inductor import inductor_stress
 from stresscheck.stress.resistor import resistor_stress
 from stresscheck.stress.seen import PartSeen, peak, rms
@@ -18,7 +20,8 @@ from stresscheck.stress.sharing import SINGLE, Share
 from stresscheck.stress.sizes import Sizes
 
 Key = tuple[str, str]
-"""(part, quantity); nodes as parts named "node:NAME" with voltage_peak, voltage_rms, voltage_dc."""
+"""(part, quantity); nodes as parts named "node:NAME" with voltage_peak, voltage_rms, voltage_dc; the whole network as
+"circuit" with root_energy."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -41,38 +44,40 @@ def stresses(network: Network, notes: Mapping[str, PartNotes], sizes: Sizes) -> 
 
     temperature [K] = ambient + R_th * dissipation, where both are declared.
     """
-    groups = tuple(line.group for line in network.lines)
+    groups = sizes.groups
     places: dict[str, dict[str, int]] = {}
     for index, branch in enumerate(network.branches):
         places.setdefault(branch.part, {})[branch.role] = index
     out: dict[Key, Floats] = {}
     for name, note in notes.items():
-        if note.kind == "drive":
-            found = _drive(network, name, places.get(name, {}), sizes)
-        else:
-            found = _part(network, note, places[name], sizes, groups)
+        drive = note.kind == "drive"
+        found = _drive(network, name, sizes) if drive else _part(network, note, places[name], sizes, groups)
         if note.thermal_resistance is not None and note.ambient is not None:
             found["temperature"] = note.ambient + note.thermal_resistance * found["dissipation"]
         out.update({(name, quantity): value for quantity, value in found.items()})
     for index, node in enumerate(network.nodes):
         volt, dc = sizes.node[:, :, index], sizes.direct.node[:, index]
         part = f"node:{node}"
-        out[(part, "voltage_peak")] = peak(dc, volt)
+        out[(part, "voltage_peak")] = peak(dc, sizes.node_extremes(index))
         out[(part, "voltage_rms")] = rms(np.zeros_like(dc), volt, groups)
-        out[(part, "voltage_dc")] = dc
+        out[(part, "voltage_dc")] = np.abs(dc)
+    out[(CIRCUIT, QUANTITY)] = root_energy(network, sizes)
     return out
 
 
 def _part(
     network: Network, note: PartNotes, places: dict[str, int], sizes: Sizes, groups: tuple[int, ...]
 ) -> dict[str, Floats]:
-    axis = network.branches[places["main"]].axis
+    branch = network.branches[places["main"]]
+    axis = branch.axis
     assert axis is not None
     seen = PartSeen(
         {role: sizes.branch(index) for role, index in places.items()},
         (sizes.values[0][:, axis], sizes.values[1][:, axis]),
         sizes.omega,
         groups,
+        sizes.sines,
+        branch.law.scale if isinstance(branch.law, CapacitorLaw) else 1.0,
     )
     if note.kind == "capacitor":
         return capacitor_stress(seen, note.share)
@@ -81,17 +86,13 @@ def _part(
     return resistor_stress(seen, note.share)
 
 
-def _drive(network: Network, name: str, places: dict[str, int], sizes: Sizes) -> dict[str, Floats]:
-    """Current at the terminals: at every line for a voltage drive, at its own for a current drive."""
+def _drive(network: Network, name: str, sizes: Sizes) -> dict[str, Floats]:
+    """Current and power at a drive's terminals."""
     index = next(i for i, source in enumerate(network.sources) if source.name == name)
-    source = network.sources[index]
-    lines, points = sizes.ampere.shape[0], sizes.ampere.shape[1]
-    ampere = np.zeros((lines, points))
-    dc = sizes.direct.terminal[:, index]
-    if source.branch is not None:
-        ampere = sizes.ampere[:, :, source.branch].copy()
-    elif "source" in places:
-        ampere = sizes.ampere[:, :, places["source"]].copy()
-    ampere[source.line] = sizes.terminal[index]
-    groups = tuple(line.group for line in network.lines)
-    return drive_stress(ampere, dc, groups, np.abs(sizes.watt[index]))
+    return drive_stress(
+        sizes.terminal[:, :, index],
+        sizes.terminal_extremes(index),
+        sizes.direct.terminal[:, index],
+        sizes.groups,
+        np.abs(sizes.watt[:, index]),
+    )

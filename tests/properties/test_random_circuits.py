@@ -22,6 +22,11 @@ def _review(circuit: Circuit) -> tuple[dict[str, float], dict[str, object]]:
     return {f.id.removesuffix("@normal"): f.nominal for f in record.findings}, {d.drive: d for d in record.drives}
 
 
+def _near(key: str) -> float:
+    """Steady figures are exact; tops over time are sought between instants."""
+    return 1e-5 if "/" in key else 1e-8
+
+
 def _expected(circuit: Circuit, solver=None) -> dict[str, float]:
     """Peaks add over frequencies, RMS and powers as sums of squares."""
     lines = [circuit.solve(f, solver) for f in circuit.frequencies()]
@@ -94,7 +99,7 @@ def test_three_times_the_drive_is_three_times_the_voltage_and_nine_times_the_pow
     one, three = _review(circuit)[0], _review(bigger)[0]
     for key, value in one.items():
         factor = 9.0 if key.endswith(("dissipation", "reactive_power", "power")) else 3.0
-        assert three[key] == pytest.approx(factor * value, rel=1e-9, abs=1e-12), key
+        assert three[key] == pytest.approx(factor * value, rel=_near(key), abs=1e-12), key
 
 
 @pytest.mark.parametrize("seed", range(20))
@@ -110,7 +115,7 @@ def test_all_impedances_doubled_voltages_stay_currents_halve(seed: int) -> None:
     one, two = _review(circuit)[0], _review(doubled)[0]
     for key, value in one.items():
         factor = 1.0 if "voltage" in key else 0.5
-        assert two[key] == pytest.approx(factor * value, rel=1e-8, abs=1e-12), key
+        assert two[key] == pytest.approx(factor * value, rel=_near(key), abs=1e-12), key
 
 
 @pytest.mark.parametrize("seed", range(20))
@@ -124,7 +129,7 @@ def test_frequency_doubled_and_reactive_values_halved_changes_nothing(seed: int)
     )
     one, two = _review(circuit)[0], _review(faster)[0]
     for key, value in one.items():
-        assert two[key] == pytest.approx(value, rel=1e-8, abs=1e-12), key
+        assert two[key] == pytest.approx(value, rel=_near(key), abs=1e-12), key
 
 
 @pytest.mark.parametrize("seed", range(20))

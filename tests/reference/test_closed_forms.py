@@ -108,7 +108,7 @@ def test_corners_miss_the_worst_case_of_a_series_tank(q, nominal, corner, worst)
 
 def test_gap_on_request_is_closed_to_one_percent() -> None:
     found = _worst(X0 / 300.0, l_tol=0.1, c_tol=0.1, r_tol=0.2, band=0.03, gap=0.01)
-    for finding in found.values():
+    for finding in (f for f in found.values() if f.event == "steady"):
         assert finding.bound <= 1.010011 * finding.worst, finding.id
 
 
