@@ -15,16 +15,20 @@ from stresscheck.circuit.laws import ResistorLaw
 from stresscheck.circuit.modes import natural_modes
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import phasors
+from stresscheck.errors import CheckError
 from stresscheck.findings.assemble import StateFindings
 from stresscheck.findings.explain import distance
 from stresscheck.stress.seen import peak
 from stresscheck.stress.sizes import sizes_at
 from stresscheck.stress.stresses import stresses
+from stresscheck.transient.discharge import seconds_until
 
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
 
 NEAR = 3.0
+LEVELS = (60.0, 50.0, 75.0)
+"""Voltages to which discharge times are given [V]; the documents that ask for them are data of the cautions."""
 
 
 def node_facts(design: Design, found: StateFindings) -> list[NodeFact]:
@@ -119,9 +123,30 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
                 volt,
                 value / volt if volt else None,
                 resonance,
+                _seconds(network, place, point) if tied else (),
             )
         )
     return facts
+
+
+def _seconds(network: Network, place: int, point: Floats | None) -> tuple[tuple[float, float], ...]:
+    """Longest discharge times found: at the worst point and with every value at either end of its tolerance."""
+    low, high = network.axes.low, network.axes.high
+    points = [network.axes.nominal, low, high] + ([] if point is None else [point])
+    if point is not None:
+        slow = point.copy()
+        parts = [n for n, axis in enumerate(network.axes.items) if axis.path.split(".")[0] in ("capacitor", "resistor")]
+        slow[parts] = high[parts]
+        points.append(slow)
+    longest = np.zeros(len(LEVELS))
+    try:
+        for at in points:
+            for drives_open in (False, True):
+                found = seconds_until(network, at, LEVELS, drives_open=drives_open)[place]
+                longest = np.maximum(longest, found)
+    except CheckError:
+        return ()
+    return tuple(zip(LEVELS, (float(s) for s in longest), strict=True))
 
 
 def _bleeding_ohm(network: Network, first: int, second: int) -> float | None:

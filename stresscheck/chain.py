@@ -18,6 +18,7 @@ from stresscheck.findings.events import find_events
 from stresscheck.findings.finding import VERDICTS, Finding
 from stresscheck.findings.linearity import guarded
 from stresscheck.findings.outlook import DriveReport, Resonance, drive_reports, resonances
+from stresscheck.findings.single_faults import SingleFault, fault_count, single_faults
 from stresscheck.limits.policy import Policy, load_policy
 from stresscheck.report.record import SCHEMA, Accepted, DeratingMark, DesignMark, Review
 
@@ -49,13 +50,14 @@ def review(
     today: datetime.date | None = None,
     progress: Progress | None = None,
     interrupted: Callable[[], bool] | None = None,
+    every_fault: bool = False,
 ) -> Review:
     """Review a loaded design under its policy, or under `derating`.
 
     states: names of the states to review, all without it; gap: relative distance between bound and found value at
     which a search stops; budget: seconds for the whole review; today: date against which accepted findings expire;
     progress: called with a text and the done share; interrupted: True ends the search, what isn't proved by then is
-    `unproved`. Raises InputError for an unknown policy or state.
+    `unproved`; every_fault: also open and short every part in turn. Raises InputError for an unknown policy or state.
     """
     policy = load_policy(design.derating if derating is None else derating, design.folder)
     names = _states(design, states)
@@ -67,7 +69,11 @@ def review(
         there = design.in_state(name)
         results.append((there, find_all(there, name, _kind(design, name), policy, gap, clock.next())))
     results = _with_events(design, results, progress, interrupted or (lambda: False))
-    return _record(design, policy, results, today or datetime.date.today())
+    faults: tuple[SingleFault, ...] = ()
+    if every_fault:
+        clock = _Clock(budget, fault_count(design), interrupted)
+        faults = single_faults(design, policy, gap, lambda _: clock.next(), progress or (lambda text, share: None))
+    return replace(_record(design, policy, results, today or datetime.date.today()), single_faults=faults)
 
 
 def _record(

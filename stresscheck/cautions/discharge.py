@@ -67,6 +67,9 @@ def _time(fact: CapacitorFact, end: float) -> float:
     """Time to `end` volts [s]; infinite where it starts above and the path's resistance isn't known."""
     if fact.volt <= end:
         return 0.0
+    computed = fact.seconds_to(end)
+    if computed is not None:
+        return computed
     if fact.discharge_ohm is None or not math.isfinite(fact.discharge_ohm):
         return math.inf
     return seconds_to(fact.farad, fact.discharge_ohm, fact.volt, end)
@@ -85,7 +88,7 @@ def _stays(fact: CapacitorFact, thresholds: Thresholds, floor: float) -> Caution
         fired = (rule, rule)
     text = (
         f"{numbers} in state {fact.state}: {cause}.{reason(fact)} Fires from {shown(floor, 'V')} up. "
-        f"{_rest(fired[0], thresholds)}"
+        f"{_bleeder(fact, thresholds)}{_rest(fired[0], thresholds)}"
     )
     source = "; ".join(dict.fromkeys(threshold.sources() for threshold in fired))
     evidence = fired[0].source.evidence
@@ -100,8 +103,8 @@ def _slow(fact: CapacitorFact, seconds: float, thresholds: Thresholds) -> Cautio
     where = "" if tier is rule else " where pulling a plug bares its contacts"
     text = (
         f"{plain_seconds(seconds)} until {fact.part} falls from {shown(fact.volt, 'V')} peak to "
-        f"{rule.shown('voltage')} in state {fact.state}, by its own path alone.{reason(fact)} Fires above "
-        f"{tier.shown('time')}{where}. {_rest(tier, thresholds)}"
+        f"{rule.shown('voltage')} in state {fact.state}, drives stopped.{reason(fact)} Fires above "
+        f"{tier.shown('time')}{where}. {_bleeder(fact, thresholds)}{_rest(tier, thresholds)}"
     )
     threshold, evidence = tier.figure("time"), tier.source.evidence
     name = f"slow-discharge.{fact.part}"
@@ -122,6 +125,19 @@ def _unknown_time(fact: CapacitorFact, rule: Threshold, thresholds: Thresholds) 
 def _rest(fired: Threshold, thresholds: Thresholds) -> str:
     """What every caution of this file ends with."""
     return f"{_wanted(thresholds)} {before_work(thresholds)}{not_covered(fired.not_covered)} {DEFER}"
+
+
+def _bleeder(fact: CapacitorFact, thresholds: Thresholds) -> str:
+    """Resistance, voltage and power of a bleeder for the time that is asked for; empty where none is needed."""
+    rule = thresholds["discharge"]
+    level, seconds = rule.figure("voltage"), rule.figure("time")
+    if not math.isfinite(fact.volt) or fact.volt <= level:
+        return ""
+    ohm = seconds / (fact.farad * math.log(fact.volt / level))
+    return (
+        f"As advice: a bleeder of at most {shown(ohm, 'ohm', down=True)} for {shown(fact.volt, 'V')} takes {fact.part} alone to "
+        f"{rule.shown('voltage')} in {rule.shown('time')}, and up to {shown(fact.volt**2 / ohm, 'W')} while it is on. "
+    )
 
 
 def _wanted(thresholds: Thresholds) -> str:

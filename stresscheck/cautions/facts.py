@@ -45,8 +45,9 @@ class CapacitorFact:
 
     `volt_dc_trapped`: direct voltage that stays after switch-off, None where none does; `has_discharge_path`:
     a path for direct current lies across it with all drives open; `discharge_ohm`: its largest resistance,
-    None where it isn't known. `kind_family`: the family as declared. The drive's figures give the reason,
-    where known.
+    None where it isn't known. `seconds`: (level [V], time [s] until it stays below that with the drives stopped, the
+    slower of open and shorted, the longest found over the box), empty where it isn't known. `kind_family`: the family
+    as declared. The drive's figures give the reason, where known.
     """
 
     part: str
@@ -61,6 +62,11 @@ class CapacitorFact:
     drive_volt_peak: float | None = None
     gain: float | None = None
     resonance_hertz: float | None = None
+    seconds: tuple[tuple[float, float], ...] = ()
+
+    def seconds_to(self, level: float) -> float | None:
+        """Computed time to a level [V], None where there is none."""
+        return next((seconds for volt, seconds in self.seconds if volt == level), None)
 
     @property
     def known(self) -> bool:

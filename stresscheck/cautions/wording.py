@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from decimal import ROUND_CEILING, Context, Decimal
+from decimal import ROUND_CEILING, ROUND_FLOOR, Context, Decimal
 
 from stresscheck.cautions.facts import CapacitorFact, NodeFact
 from stresscheck.cautions.thresholds import Thresholds
@@ -20,11 +20,14 @@ _PREFIXES = (
 )
 
 
-def shown(value: float, unit: str, digits: int = 3) -> str:
-    """A figure with a prefix, rounded up in size to `digits`: 42.41 V → "42.5 V", 873.2 V → "874 V"."""
+def shown(value: float, unit: str, digits: int = 3, *, down: bool = False) -> str:
+    """A figure with a prefix, rounded up in size to `digits`: 42.41 V → "42.5 V", 873.2 V → "874 V".
+
+    down: rounded down instead, for figures of which less is asked for.
+    """
     if value == 0.0:
         return f"0 {unit}"
-    rounded = Context(prec=digits, rounding=ROUND_CEILING).create_decimal(f"{abs(value):.12g}")
+    rounded = Context(prec=digits, rounding=ROUND_FLOOR if down else ROUND_CEILING).create_decimal(f"{abs(value):.12g}")
     for factor, prefix in _PREFIXES:
         if rounded >= Decimal(repr(factor)) or factor == 1e-12:
             return f"{float(rounded / Decimal(repr(factor))):.{digits + 3}g} {prefix}{unit}"

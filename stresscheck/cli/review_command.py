@@ -50,6 +50,9 @@ States = Annotated[list[str] | None, typer.Option(metavar="STATE", help="Only th
 Gap = Annotated[str, typer.Option(metavar="PERCENT", help="How far a proved bound may stay above the worst found.")]
 Budget = Annotated[str, typer.Option(metavar="TIME", help="Time for searching and proving, per file.")]
 Explain = Annotated[str | None, typer.Option(metavar="ID", help="Show the working of one finding.")]
+SingleFaults = Annotated[
+    bool, typer.Option("--single-faults", help="Also open and short every part in turn; changes no verdict.")
+]
 Today = Annotated[
     str | None, typer.Option(metavar="DATE", help="Date against which accepted findings expire; the day's without it.")
 ]
@@ -65,6 +68,7 @@ def review(
     budget: Budget = "10 s",
     explain: Explain = None,
     today: Today = None,
+    single_faults: SingleFaults = False,
 ) -> None:
     """Review design files: find and prove worst stresses, compare them with derated ratings, list cautions.
 
@@ -84,6 +88,7 @@ def review(
     from stresscheck.errors import InputError
 
     options, mistakes = _options(form, gap, budget, today, explain)
+    options["every_fault"] = single_faults
     designs, problems = load_all(files, derating, state)
     try:
         check_target(output, files)

@@ -47,6 +47,16 @@ def as_data(review: Review) -> dict[str, Any]:
         "accepted": [asdict(item) for item in review.accepted],
         "assumptions": list(review.assumptions),
         "problems": list(review.problems),
+        "single_faults": [
+            {
+                "part": fault.part,
+                "how": fault.how,
+                "outcome": fault.outcome,
+                "why": fault.why,
+                "findings": [_finding(finding) for finding in fault.findings],
+            }
+            for fault in review.single_faults
+        ],
     }
     clean: dict[str, Any] = _finite(data)
     return clean

@@ -6,6 +6,7 @@ from collections.abc import Iterable
 
 from stresscheck.findings.finding import Finding
 from stresscheck.report import figures
+from stresscheck.report.fault_lines import INTRODUCTION, fault_line
 from stresscheck.report.lines import clean
 from stresscheck.report.record import Review
 from stresscheck.report.terminal_format import CLOSING, where
@@ -16,7 +17,7 @@ _SPECIAL = "\\`*_{}[]<>|~&#"
 def render(review: Review) -> str:
     """The whole review."""
     parts = [
-        *_head(review), *_findings(review), *_working(review), *_circuit(review), *_cautions(review),
+        *_head(review), *_findings(review), *_faults(review), *_working(review), *_circuit(review), *_cautions(review),
         *_checklist(review), *_notes(review), "", text(CLOSING), "",
     ]  # fmt: skip
     return "\n".join(parts)
@@ -59,6 +60,12 @@ def _findings(review: Review) -> list[str]:
             told = "; ".join(text(note) for note in (*notes, *because, where(f)) if note)
             out.append(f"- **{text(f.id)}** {f.verdict}: {told or 'see the table'}")
     return [*out, ""]
+
+
+def _faults(review: Review) -> list[str]:
+    if not review.single_faults:
+        return []
+    return ["## Single faults", "", INTRODUCTION, "", *(f"- {text(fault_line(f))}" for f in review.single_faults), ""]
 
 
 def _working(review: Review) -> list[str]:

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from stresscheck.cautions.caution import Caution, ChecklistLine
 from stresscheck.findings.finding import Finding
 from stresscheck.findings.outlook import DriveReport, Resonance
+from stresscheck.findings.single_faults import SingleFault
 
 SCHEMA = "stresscheck.review/1"
 
@@ -63,3 +64,5 @@ class Review:
     assumptions: tuple[str, ...]
     problems: tuple[str, ...] = ()
     """Remarks of the whole run: budget spent, states that couldn't be solved."""
+    single_faults: tuple[SingleFault, ...] = ()
+    """Every part opened and shorted in turn, where that was asked for; changes no verdict."""

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 
 from stresscheck.findings.finding import Finding
 from stresscheck.report import figures
+from stresscheck.report.fault_lines import INTRODUCTION, fault_line
 from stresscheck.report.lines import Lines
 from stresscheck.report.record import Review
 from stresscheck.report.summary import summary
@@ -29,6 +30,7 @@ def render(review: Review, width: int = 80, *, color: bool = False) -> str:
     _head(out, review)
     _attention(out, review)
     _within(out, review)
+    _faults(out, review)
     _circuit(out, review)
     _cautions(out, review)
     _checklist(out, review)
@@ -171,6 +173,16 @@ def _within(out: Lines, review: Review) -> None:
         for finding in mine:
             _compact(out, finding)
         _remarks(out, mine)
+
+
+def _faults(out: Lines, review: Review) -> None:
+    if not review.single_faults:
+        return
+    out.add()
+    out.add(f"single faults ({len(review.single_faults)})", tone="open")
+    out.add(INTRODUCTION, indent=2, tone="quiet")
+    for fault in review.single_faults:
+        out.add(fault_line(fault), indent=2, hang=2)
 
 
 def _compact(out: Lines, finding: Finding) -> None:

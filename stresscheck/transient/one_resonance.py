@@ -1,4 +1,4 @@
-"""Tight bounds in time for networks with one resonance (two free charges or fluxes), anywhere in the box.
+"""Tight bounds in time for networks with one resonance (two free charges or fluxes) or none, anywhere in the box.
 
 Such a response is H(s) = D + (c1 s + c0)/(s^2 + 2 a s + w0^2), with c0 = w0^2 (H(0) - D). Over a piece of the box,
 each of D, H(0), 2a and w0^2 is in every value by itself a ratio of straight lines without a pole (values in 1/L, 1/C
@@ -54,10 +54,12 @@ def one_resonance(network: Network) -> OneResonance | None:
     roles = roles_for(network)
     axes = [n for n, a in enumerate(network.axes.items) if a.varies and _acts(network, n)]
     pieces = int(MOST_POINTS ** (1.0 / max(1, len(axes)))) - 1
-    if len(roles.free) != 2 or roles.tied or network.couplings or network.transformers or pieces < 1:
+    if len(roles.free) not in (0, 1, 2) or roles.tied or network.couplings or network.transformers or pieces < 1:
         return None
     bands = [network.band_of(line) for line in network.lines]
     omega = 2.0 * np.pi * np.array([min(b[0] for b in bands), max(b[1] for b in bands)])
+    if len(roles.free) < 2:
+        return _without_resonance(network, _Cells.of(network, axes, min(pieces, 12), np.unique(omega)))
     ends = _Cells.of(network, axes, 1, omega)
     own_square = _determinant(motion(network, ends.points, ends.omega, roles).a)
     if not (own_square > 0.0).all():
@@ -76,6 +78,24 @@ def one_resonance(network: Network) -> OneResonance | None:
     first = _first(network, cells)
     with np.errstate(all="ignore"):
         return _bounds(network, damping, square, direct, at_rest, first)
+
+
+def _without_resonance(network: Network, cells: _Cells) -> OneResonance | None:
+    """One free charge or flux, or none: every response goes from D to H(0) along one exponential and never beyond."""
+    system = motion(network, cells.points, cells.omega, roles_for(network))
+    still = system.d
+    if system.a.shape[1]:
+        if not (system.a < 0.0).all():
+            return None
+        still = system.d - system.c @ (system.b / system.a)
+    direct, at_rest = cells.ends(_all(network, system.d)), cells.ends(_all(network, still))
+    d = np.maximum(np.abs(direct[0]), np.abs(direct[1]))
+    rest = np.maximum(np.abs(at_rest[0]), np.abs(at_rest[1]))
+    gap = np.maximum(np.abs(at_rest[1] - direct[0]), np.abs(at_rest[0] - direct[1]))
+    gap = np.where((rest == 0.0) & (d == 0.0), 0.0, gap)
+    grow = 1.0 + MARGIN
+    every, most = (d + gap).max(axis=0) * grow, np.maximum(d, rest).max(axis=0) * grow
+    return OneResonance(every, every, most, most)
 
 
 def _determinant(a: Floats) -> Floats:

@@ -24,7 +24,10 @@ MOST_FINE = 12_000
 MOST_WITH_HARMONICS = 600
 """Fewer instants where every phase is looked at for each."""
 TOPS = 3
-"""Tops of the envelope that are searched finely."""
+MORE_TOPS = 24
+"""Tops of the envelope that are searched finely, at first and where not every instant can be."""
+MOST_EVERYWHERE = 20_000
+"""Instants up to which the whole course is looked at."""
 APART = 0.15
 """Rates whose frequencies differ by more than this part of the larger beat fast: their sizes are added."""
 DEAD = 1e-13
@@ -167,33 +170,48 @@ def _rest_ceiling(happening: Happening) -> Floats:
 
 
 def _refined(happening: Happening, time: Floats, envelope: Floats, until: float) -> tuple[Floats, Floats]:
-    """Look finely around the tops of the envelope, response by response."""
+    """Look finely, response by response: everywhere where that is affordable, else around the envelope's tops."""
     value, when = np.zeros(len(envelope)), np.zeros(len(envelope))
     for row, course in enumerate(envelope):
         if course.max() <= 0.0:
             continue
         one = _only(happening, row)
-        for top in _tops(course):
-            fine = _window(one, float(time[top]), until)
-            seen = _worst_phase(one, fine)
-            best = int(seen.argmax())
-            for _ in range(2):
-                near = np.linspace(fine[max(best - 1, 0)], fine[min(best + 1, len(fine) - 1)], 33)
-                again = _worst_phase(one, near)
-                if again.max() < seen.max():
-                    break
-                fine, seen, best = near, again, int(again.argmax())
-            if seen[best] > value[row]:
-                value[row], when[row] = seen[best], fine[best]
+        for top in _tops(course, TOPS):
+            value[row], when[row] = _better(one, _window(one, float(time[top]), until), value[row], when[row])
+        # Beyond the last instant at which the envelope is above what has been found nothing can be larger.
+        last = np.flatnonzero(course > value[row] * (1.0 + 1e-9))
+        if not last.size:
+            continue
+        end = min(until, float(time[min(last[-1] + 1, len(time) - 1)]))
+        step = _step(one, 0.0)
+        if step > 0.0 and end / step <= MOST_EVERYWHERE:
+            fine = np.linspace(0.0, end, max(65, int(end / step)))
+            value[row], when[row] = _better(one, fine, value[row], when[row])
+        else:
+            for top in _tops(course, MORE_TOPS)[TOPS:]:
+                value[row], when[row] = _better(one, _window(one, float(time[top]), until), value[row], when[row])
     return value, when
 
 
-def _tops(course: Floats) -> list[int]:
+def _better(one: Happening, fine: Floats, value: float, when: float) -> tuple[float, float]:
+    """The larger of what is known and of the largest value at these instants and between them."""
+    seen = _worst_phase(one, fine)
+    best = int(seen.argmax())
+    for _ in range(2):
+        near = np.linspace(fine[max(best - 1, 0)], fine[min(best + 1, len(fine) - 1)], 33)
+        again = _worst_phase(one, near)
+        if again.max() < seen.max():
+            break
+        fine, seen, best = near, again, int(again.argmax())
+    return (float(seen[best]), float(fine[best])) if seen[best] > value else (value, when)
+
+
+def _tops(course: Floats, count: int) -> list[int]:
     """Places of the highest tops of an envelope."""
     padded = np.concatenate([[-np.inf], course, [-np.inf]])
     tops = np.flatnonzero((padded[1:-1] >= padded[:-2]) & (padded[1:-1] > padded[2:]))
     order = tops[np.argsort(-course[tops], kind="stable")]
-    return [int(i) for i in order[:TOPS]]
+    return [int(i) for i in order[:count]]
 
 
 def _only(happening: Happening, row: int) -> Happening:
@@ -212,25 +230,39 @@ def _rows_of(rest: Rest, rows: list[int]) -> Rest:
     return lambda angle: rest(angle)[rows]
 
 
+def _alive(one: Happening, time: float) -> list[Floats]:
+    """Frequencies [rad/s] of the terms that still count at an instant, sum by sum."""
+    terms = one.terms()
+    sizes = [np.abs(t.coefficient[0]) * np.exp(t.rate.real * time) for t in terms]
+    biggest = max((float(s.max()) for s in sizes if s.size), default=0.0)
+    return [t.rate.imag[size > 1e-5 * biggest] for t, size in zip(terms, sizes, strict=True) if size.size]
+
+
+def _fastest(one: Happening, time: float) -> float:
+    """Fastest beat at an instant [rad/s]: within each sum, and of everything where a direct part beats with it."""
+    alive = [a for a in _alive(one, time) if a.size]
+    spread = [float(np.ptp(a)) for a in alive]
+    if one.direct.rate.size:
+        spread += [float(np.abs(a).max()) for a in alive]
+    return max(spread, default=0.0)
+
+
+def _step(one: Happening, time: float) -> float:
+    """Time between instants that is fine enough for the fastest beat; zero without any."""
+    fast = _fastest(one, time)
+    return 2.0 * np.pi / fast / FINE if fast > 0.0 else 0.0
+
+
 def _window(one: Happening, top: float, until: float) -> Floats:
     """Fine instants around a top: two periods of the slowest fast beat, fine enough for the fastest one alive."""
-    alive = []
-    terms = one.terms()
-    sizes = [np.abs(t.coefficient[0]) * np.exp(t.rate.real * top) for t in terms]
-    biggest = max((float(s.max()) for s in sizes if s.size), default=0.0)
-    for t, size in zip(terms, sizes, strict=True):
-        alive.append(t.rate.imag[size > 1e-5 * biggest])
-    spread = [float(np.ptp(a)) for a in alive if a.size]
-    if one.direct.rate.size:
-        spread += [float(np.abs(a).max()) for a in alive if a.size]
-    fast = max(spread, default=0.0)
+    fast = _fastest(one, top)
     if fast == 0.0:
         return np.array([top])
-    centres = sorted({round(float(c.rate.imag.mean()), 12) for t in terms for c in t.clusters()})
+    centres = sorted({round(float(c.rate.imag.mean()), 12) for t in one.terms() for c in t.clusters()})
     gaps = np.diff(np.array(centres))
     slow = float(gaps[gaps > 0.0].min()) if (gaps > 0.0).any() else fast
     half = 2.0 * np.pi / min(slow, fast)
-    step = 2.0 * np.pi / fast / FINE
+    step = _step(one, top)
     most = MOST_FINE if all(len(swing.harmonics) == 1 for swing in one.swings) else MOST_WITH_HARMONICS
     count = int(min(most, max(65, 2.0 * half / step)))
     start = max(0.0, top - half)
