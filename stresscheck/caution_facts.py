@@ -53,7 +53,7 @@ def node_facts(design: Design, found: StateFindings) -> list[NodeFact]:
                 float(here[part, "voltage_rms"][0]),
                 value,
                 float(here[part, "voltage_dc"][0]),
-                _highest(network, point),
+                _loudest(network, point, network.nodes.index(node)),
                 drive,
                 volt,
                 None if not volt else value / volt,
@@ -69,8 +69,11 @@ def _unknown(node: str, state: str, reachable: bool) -> NodeFact:
     return NodeFact(node, state, nan, nan, nan, nan, "", None, None, None, reachable)
 
 
-def _highest(network: Network, point: Floats) -> float:
-    return max(float(line.hertz(point[None])[0]) for line in network.lines if line.weighty)
+def _loudest(network: Network, point: Floats, node: int) -> float:
+    """Frequency that contributes most to a node's voltage [Hz]."""
+    sizes = sizes_at(network, point[None])
+    number = int(sizes.node[: len(network.lines), 0, node].argmax())
+    return float(network.lines[number].hertz(point[None])[0])
 
 
 def _reason(network: Network, point: Floats) -> tuple[str, float | None, float | None]:
@@ -97,6 +100,7 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
     facts = []
     absent = design.opened | design.shorted
     group = groups(_without_sources(network))
+    discharge = _Discharge(network)
     for name, part in design.capacitor.items():
         place = network.branch_of(name)
         if name in absent or place is None:
@@ -123,30 +127,49 @@ def capacitor_facts(design: Design, found: StateFindings) -> list[CapacitorFact]
                 volt,
                 value / volt if volt else None,
                 resonance,
-                _seconds(network, place, point) if tied else (),
+                discharge.seconds(place, point) if tied else (),
             )
         )
     return facts
 
 
-def _seconds(network: Network, place: int, point: Floats | None) -> tuple[tuple[float, float], ...]:
-    """Longest discharge times found: at the worst point and with every value at either end of its tolerance."""
-    low, high = network.axes.low, network.axes.high
-    points = [network.axes.nominal, low, high] + ([] if point is None else [point])
-    if point is not None:
-        slow = point.copy()
-        parts = [n for n, axis in enumerate(network.axes.items) if axis.path.split(".")[0] in ("capacitor", "resistor")]
-        slow[parts] = high[parts]
-        points.append(slow)
-    longest = np.zeros(len(LEVELS))
-    try:
+class _Discharge:
+    """Discharge times of every capacitor of a network, each point worked out once."""
+
+    def __init__(self, network: Network) -> None:
+        self.network = network
+        self.known: dict[bytes, Floats | None] = {}
+
+    def seconds(self, place: int, point: Floats | None) -> tuple[tuple[float, float], ...]:
+        """Longest times found for one capacitor: at its worst point, and with values at the ends of their tolerances.
+
+        Empty where one of them can't be computed.
+        """
+        axes = self.network.axes
+        points = [axes.nominal, axes.low, axes.high]
+        if point is not None:
+            slow = point.copy()
+            kinds = ("capacitor", "resistor")
+            parts = [n for n, axis in enumerate(axes.items) if axis.path.split(".")[0] in kinds]
+            slow[parts] = axes.high[parts]
+            points += [point, slow]
+        longest = np.zeros(len(LEVELS))
         for at in points:
-            for drives_open in (False, True):
-                found = seconds_until(network, at, LEVELS, drives_open=drives_open)[place]
-                longest = np.maximum(longest, found)
-    except CheckError:
-        return ()
-    return tuple(zip(LEVELS, (float(s) for s in longest), strict=True))
+            found = self._at(at)
+            if found is None:
+                return ()
+            longest = np.maximum(longest, found[place])
+        return tuple(zip(LEVELS, (float(s) for s in longest), strict=True))
+
+    def _at(self, point: Floats) -> Floats | None:
+        key = point.tobytes()
+        if key not in self.known:
+            try:
+                both = [seconds_until(self.network, point, LEVELS, drives_open=o) for o in (False, True)]
+                self.known[key] = np.maximum(*both)
+            except CheckError:
+                self.known[key] = None
+        return self.known[key]
 
 
 def _bleeding_ohm(network: Network, first: int, second: int) -> float | None:

@@ -101,9 +101,24 @@ def _record(
         cautions=cautions_for(_facts(design, results)),
         checklist=(),
         accepted=accepted,
-        assumptions=ASSUMPTIONS,
+        assumptions=(*ASSUMPTIONS, *_cut_offs(outlook)),
         problems=tuple(f"state {found.state}: {found.why}" for _, found in results if found.why),
     )
+
+
+def _cut_offs(outlook: Sequence[StateFindings]) -> tuple[str, ...]:
+    """Up to which harmonic squares and triangles are summed, and what that leaves out."""
+    found = []
+    for state in outlook:
+        network = state.network
+        if network is None or not any(source.waveform.endless for source in network.sources):
+            continue
+        top = max(line.order for line in network.lines)
+        found.append(
+            f"State {state.state}: harmonics are summed up to order {top}. At the points looked at, those beyond it add "
+            f"at most {100.0 * network.left_out:.2g} % of any stress; bounds cover them."
+        )
+    return tuple(found)
 
 
 def _with_events(

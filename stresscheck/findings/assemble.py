@@ -246,7 +246,8 @@ def _finding(
     if not np.isfinite(worst.peaks.value[column]):
         return lost(check, state, kind, NOT_SET)
     problem = Problem(network, part_notes(design), [Asked(check.part, check.quantity)])
-    if gate_of(design, network) is not None:
+    gated = gate_of(design, network) is not None
+    if gated:
         point, stress = worst.peaks.point[column], float(worst.peaks.value[column])
     else:
         stress = float(worst.peaks.value[column]) if use < 0 else float(problem.values(point[None])[0, 0])
@@ -271,7 +272,7 @@ def _finding(
         worst=stress, bound=None if bound is None else float(bound), rated=result.rated,
         allowed_fraction=None if limit is None else limit.allowed_fraction, allowed=result.allowed,
         ratio=result.ratio, at=place,
-        working=steps_for(network, check, point, stress) + (() if limit is None else limit.steps(hertz)),
+        working=steps_for(network, check, point, stress, gated=gated) + (() if limit is None else limit.steps(hertz)),
         rating_source="" if limit is None else limit.rating_source,
         derating_source="" if limit is None else limit.derating_source,
         why=result.why, ratio_bound=bound_use, proof=proof, reason="" if dead else reason_for(network, check, point),

@@ -176,7 +176,10 @@ def _finding(state: str, network: Network, steady: Steady, row: Row, check: Chec
         rating_source="" if limit is None else limit.rating_source,
         derating_source="" if limit is None else limit.derating_source, why=why, ratio_bound=use,
         proof=Proof(1, None if bound is None or stress <= 0.0 else max(0.0, bound / stress - 1.0), METHOD, None),
-        reason=when(float(seen.time[index]), check.event, seen.before[index]),
+        reason=when(
+            float(seen.time[index]), check.event, seen.before[index], stress,
+            float(steady.worst.peaks.value[steady.column[row.number]]),
+        ),
     )  # fmt: skip
 
 

@@ -5,11 +5,13 @@ from __future__ import annotations
 import math
 
 from stresscheck.arrays import Floats
+from stresscheck.circuit.direct import direct, has_offset
 from stresscheck.circuit.laws import TAU
 from stresscheck.circuit.modes import Mode, natural_modes
 from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import Phasors, phasors
 from stresscheck.findings.checks import Check
+from stresscheck.stress.sizes import only_sines
 from stresscheck.working import Step
 
 THEORY = "circuit theory"
@@ -67,10 +69,11 @@ def _single_drive(network: Network, point: Floats) -> tuple[Phasors | None, floa
     return seen, float(abs(seen.level[0, 0]))
 
 
-def steps_for(network: Network, check: Check, point: Floats, stress: float) -> tuple[Step, ...]:
+def steps_for(network: Network, check: Check, point: Floats, stress: float, *, gated: bool = False) -> tuple[Step, ...]:
     """Formula, numbers and result from the point's values to the stress, one line at a time.
 
-    The branch phasors are what the nodal equations give at the point; everything after them is arithmetic.
+    The branch phasors are what the nodal equations give at the point; everything after them is arithmetic. Of many
+    harmonics those that carry most are shown.
     """
     place = network.branch_of(check.part)
     if place is None:
@@ -78,9 +81,8 @@ def steps_for(network: Network, check: Check, point: Floats, stress: float) -> t
     if place is None:
         return ()
     steps: list[Step] = []
-    for number, line in enumerate(network.lines, start=1):
+    for number, seen in _leading(network, point, place):
         tag = "" if len(network.lines) == 1 else f"_{number}"
-        seen = phasors(network, point[None], line)
         hertz = float(seen.omega[0] / TAU)
         z, volt, ampere = (complex(v[0, place]) for v in (seen.ohm, seen.volt, seen.ampere))
         at = f"f = {_text(hertz, 'Hz')}"
@@ -93,15 +95,40 @@ def steps_for(network: Network, check: Check, point: Floats, stress: float) -> t
             if any(place in (c.first, c.second) for c in network.couplings):
                 formula, numbers = "peak, with the voltage induced by coupled coils", at
             steps.append(Step(f"V{tag}", formula, numbers, abs(volt), "V", THEORY))
-    steps.append(
-        Step(check.quantity, _formula(check, len(network.lines)), "from the lines above", stress, check.unit, THEORY)
-    )
+    steps += _direct_steps(network, check, point, place)
+    formula, numbers = _formula(check, network, gated=gated), "from the lines above"
+    if len(network.lines) > SHOWN:
+        numbers += f" and {len(network.lines) - SHOWN} more"
+    steps.append(Step(check.quantity, formula, numbers, stress, check.unit, THEORY))
     return tuple(steps)
 
 
-def _formula(check: Check, lines: int) -> str:
+def _direct_steps(network: Network, check: Check, point: Floats, place: int) -> list[Step]:
+    """Direct voltage or current of a part, where a drive has a direct part."""
+    if not has_offset(network):
+        return []
+    still = direct(network, point[None])
+    if check.quantity.startswith("voltage"):
+        return [Step("V_dc", "from the resistances and offsets", "f = 0", float(still.volt[0, place]), "V", THEORY)]
+    return [Step("I_dc", "from the resistances and offsets", "f = 0", float(still.ampere[0, place]), "A", THEORY)]
+
+
+SHOWN = 6
+"""Lines of which the phasors are shown, those with the largest currents in the part."""
+
+
+def _leading(network: Network, point: Floats, place: int) -> list[tuple[int, Phasors]]:
+    """The lines to show, by number, each with its phasors at the point."""
+    seen = [(number, phasors(network, point[None], line)) for number, line in enumerate(network.lines, start=1)]
+    if len(seen) <= SHOWN:
+        return seen
+    ranked = sorted(seen, key=lambda item: -abs(complex(item[1].ampere[0, place])))[:SHOWN]
+    return sorted(ranked, key=lambda item: item[0])
+
+
+def _formula(check: Check, network: Network, *, gated: bool) -> str:
     """How a stress follows from the peaks of voltage and current, in words of arithmetic."""
-    total = "" if lines == 1 else ", summed over the drives' frequencies"
+    total = "" if len(network.lines) == 1 else ", summed over the frequencies"
     known = {
         "voltage_peak": "|V_dc| + V",
         "voltage_peak_to_peak": "2 V",
@@ -115,6 +142,17 @@ def _formula(check: Check, lines: int) -> str:
         "flux_density": "L I / (N A)",
         "power": "Re(V I*) / 2",
     }
+    peaks = {
+        "voltage_peak": "largest |V_dc + v(t)|", "voltage_peak_to_peak": "largest v(t) - smallest v(t)",
+        "current_peak": "largest |I_dc + i(t)|", "slew_rate": "largest |i(t)| / C",
+        "flux_density": "L (largest |I_dc + i(t)|) / (N A)",
+    }  # fmt: skip
+    if gated:
+        way = " over the bursts, first from rest and then with what is left of the ringing"
+        mean = f"{known[check.quantity]} with the RMS over the gating period"
+        return peaks[check.quantity] + way if check.quantity in peaks else mean
+    if check.quantity in peaks and not only_sines(network):
+        return peaks[check.quantity] + " over a period, all harmonics put together with their phases"
     return known[check.quantity] + total
 
 

@@ -54,11 +54,11 @@ def _proof(out: Lines, finding: Finding) -> None:
         return
     out.add(f"method: {proof.method}", indent=2)
     if finding.bound is None:
-        out.add(f"{proof.boxes} boxes examined; no bound was found", indent=2)
+        out.add(f"{_boxes(proof.boxes)} examined; no bound was found", indent=2)
     else:
         gap = "" if proof.gap is None else f", {100 * proof.gap:.3g} % above the worst found"
         out.add(
-            f"{proof.boxes} boxes examined; no point of the box exceeds {finding.bound:.7g} {finding.unit}{gap}",
+            f"{_boxes(proof.boxes)} examined; no point of the box exceeds {finding.bound:.7g} {finding.unit}{gap}",
             indent=2,
         )
     if finding.ratio_bound is not None:
@@ -67,3 +67,7 @@ def _proof(out: Lines, finding: Finding) -> None:
         out.add(remark, indent=2)
     if proof.corners is not None:
         out.add(f"largest at the corners of the box: {proof.corners:.7g} {finding.unit}", indent=2)
+
+
+def _boxes(count: int) -> str:
+    return "1 box" if count == 1 else f"{count} boxes"

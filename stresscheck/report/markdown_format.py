@@ -76,7 +76,8 @@ def _working(review: Review) -> list[str]:
         if f.at is not None:
             out.append(f"- {text(where(f))}")
         if f.proof is not None:
-            out.append(f"- proof: {text(f.proof.method)}; {f.proof.boxes} boxes")
+            boxes = "1 box" if f.proof.boxes == 1 else f"{f.proof.boxes} boxes"
+            out.append(f"- proof: {text(f.proof.method)}; {boxes}")
         out.append("")
     return out
 

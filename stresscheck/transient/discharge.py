@@ -13,8 +13,6 @@ from stresscheck.circuit.network import Network
 from stresscheck.transient.carried import Carried, carried
 from stresscheck.transient.events import Stage, happening, stage
 
-OPEN_OHM = 1e12
-"""What stands in for an open drive where a part of the circuit would otherwise hang in the air [ohm]."""
 ROUNDS = 200
 
 
@@ -27,18 +25,22 @@ def seconds_until(network: Network, point: Floats, levels: tuple[float, ...], *,
     """
     held = carried(network, point)
     if drives_open:
-        after = _opened(network)
-        here = stage(after, point, running=False)
+        omega = network.lines[0].omega(point[None])
+        here = stage(_opened(network), point, running=False, omega=omega)
         held = _charges_only(network, held)
     else:
         here = stage(network, point, running=False)
-    return _times(here, held, levels)
+    out = np.zeros((len(network.branches), len(levels)))
+    found = _times(here, held, levels)
+    out[: len(found)] = found
+    return out
 
 
 def _opened(network: Network) -> Network:
-    """The network with every drive cut out, its resistance included."""
-    kept = tuple(replace(b, fixed=OPEN_OHM) if b.role == "source" else b for b in network.branches)
-    return replace(network, branches=kept)
+    """The network with every drive cut out, its resistance included; drives stand last among the branches."""
+    kept = tuple(branch for branch in network.branches if branch.role != "source")
+    assert kept == network.branches[: len(kept)]
+    return replace(network, branches=kept, sources=(), lines=())
 
 
 def _charges_only(network: Network, held: Carried) -> Carried:

@@ -43,10 +43,15 @@ class Stage:
     running: bool = True
 
 
-def stage(network: Network, point: Floats, *, running: bool = True, roles: Roles | None = None) -> Stage:
-    """Poles and residues of a network at a point [axes]; CheckError where it has no solution in time."""
-    line = network.lines[0]
-    ring = ringing(network, point[None], line.omega(point[None]), roles or roles_for(network))
+def stage(
+    network: Network, point: Floats, *, running: bool = True, roles: Roles | None = None, omega: Floats | None = None
+) -> Stage:
+    """Poles and residues of a network at a point [axes]; CheckError where it has no solution in time.
+
+    omega: where losses are read [1, rad/s]; the first drive's without it.
+    """
+    at = network.lines[0].omega(point[None]) if omega is None else omega
+    ring = ringing(network, point[None], at, roles or roles_for(network))
     return Stage(network, point, ring, _with_terminals(network, ring), running)
 
 
@@ -171,4 +176,7 @@ def _direct(new: Stage, before: Carried) -> tuple[Terms, Flags]:
 
 def _own(network: Network, direct: Floats, level: Floats) -> Floats:
     """Terminal currents that direct levels make at once, [drives]."""
-    return np.asarray(sum(terminal_feed(network, direct, s)[0] * level[s] for s in range(len(level))))
+    total = np.zeros(len(level))
+    for s in range(len(level)):
+        total += terminal_feed(network, direct, s)[0] * level[s]
+    return total

@@ -21,13 +21,13 @@ SPAN = 12.0
 FINE = 48
 """Instants per period of the fastest beat where the top is sought."""
 MOST_FINE = 12_000
-MOST_WITH_HARMONICS = 600
+MOST_WITH_HARMONICS = 160
 """Fewer instants where every phase is looked at for each."""
 TOPS = 3
 MORE_TOPS = 24
 """Tops of the envelope that are searched finely, at first and where not every instant can be."""
 MOST_EVERYWHERE = 20_000
-"""Instants up to which the whole course is looked at."""
+"""Instants, from the event on, at which the course is looked at; beyond them around tops of the envelope only."""
 APART = 0.15
 """Rates whose frequencies differ by more than this part of the larger beat fast: their sizes are added."""
 DEAD = 1e-13
@@ -176,20 +176,23 @@ def _refined(happening: Happening, time: Floats, envelope: Floats, until: float)
         if course.max() <= 0.0:
             continue
         one = _only(happening, row)
+        slow = _slowest_beat(one)
         for top in _tops(course, TOPS):
-            value[row], when[row] = _better(one, _window(one, float(time[top]), until), value[row], when[row])
+            value[row], when[row] = _better(one, _window(one, float(time[top]), until, slow), value[row], when[row])
         # Beyond the last instant at which the envelope is above what has been found nothing can be larger.
         last = np.flatnonzero(course > value[row] * (1.0 + 1e-9))
         if not last.size:
             continue
         end = min(until, float(time[min(last[-1] + 1, len(time) - 1)]))
         step = _step(one, 0.0)
-        if step > 0.0 and end / step <= MOST_EVERYWHERE:
-            fine = np.linspace(0.0, end, max(65, int(end / step)))
-            value[row], when[row] = _better(one, fine, value[row], when[row])
-        else:
+        if step <= 0.0:
+            continue
+        alone = all(len(swing.harmonics) == 1 for swing in one.swings)
+        count = int(min(max(end / step, 65.0), MOST_EVERYWHERE if alone else 4 * MOST_WITH_HARMONICS))
+        value[row], when[row] = _better(one, np.linspace(0.0, min(end, count * step), count), value[row], when[row])
+        if end > count * step and alone:
             for top in _tops(course, MORE_TOPS)[TOPS:]:
-                value[row], when[row] = _better(one, _window(one, float(time[top]), until), value[row], when[row])
+                value[row], when[row] = _better(one, _window(one, float(time[top]), until, slow), value[row], when[row])
     return value, when
 
 
@@ -253,16 +256,20 @@ def _step(one: Happening, time: float) -> float:
     return 2.0 * np.pi / fast / FINE if fast > 0.0 else 0.0
 
 
-def _window(one: Happening, top: float, until: float) -> Floats:
+def _slowest_beat(one: Happening) -> float:
+    """Smallest distance between the frequencies of clusters [rad/s], infinite where there is one cluster."""
+    centres = np.unique([float(c.rate.imag.mean()) for t in one.terms() for c in t.clusters()])
+    gaps = np.diff(centres)
+    return float(gaps.min()) if gaps.size else np.inf
+
+
+def _window(one: Happening, top: float, until: float, slow: float) -> Floats:
     """Fine instants around a top: two periods of the slowest fast beat, fine enough for the fastest one alive."""
     fast = _fastest(one, top)
     if fast == 0.0:
         return np.array([top])
-    centres = sorted({round(float(c.rate.imag.mean()), 12) for t in one.terms() for c in t.clusters()})
-    gaps = np.diff(np.array(centres))
-    slow = float(gaps[gaps > 0.0].min()) if (gaps > 0.0).any() else fast
     half = 2.0 * np.pi / min(slow, fast)
-    step = _step(one, top)
+    step = 2.0 * np.pi / fast / FINE
     most = MOST_FINE if all(len(swing.harmonics) == 1 for swing in one.swings) else MOST_WITH_HARMONICS
     count = int(min(most, max(65, 2.0 * half / step)))
     start = max(0.0, top - half)
@@ -289,7 +296,7 @@ def _over_phases(swing: Swing, time: Floats) -> tuple[Floats, Floats]:
     The phase is counted from each instant's own angle, so that the grid, its edges and the rest serve all instants.
     """
     orders = np.array([n for n, _ in swing.harmonics])
-    grid = np.linspace(-np.pi, np.pi, max(64, 16 * int(orders.max())), endpoint=False)
+    grid = np.linspace(-np.pi, np.pi, max(64, 10 * int(orders.max())), endpoint=False)
     angle = np.concatenate([grid, [e + side for e in swing.edges for side in (-1e-9, 1e-9)]])
     basis = np.concatenate([np.cos(orders[:, None] * angle), -np.sin(orders[:, None] * angle)])
     turned = np.stack([t.at(time)[0] * np.exp(-1j * n * swing.omega * time) for n, t in swing.harmonics], axis=1)

@@ -88,7 +88,7 @@ def test_command_misspelt_ends_with_2(arguments: list[str]) -> None:
 def test_explain_shows_working_point_and_proof(capsys: pytest.CaptureFixture[str]) -> None:
     assert guarded(["review", OPEN, "--explain", "Cbank.voltage_rms@normal"]) == 3
     text = capsys.readouterr().out
-    for word in ("working", "proof", "capacitor.Cbank.value", "V / sqrt(2)", "boxes examined"):
+    for word in ("working", "proof", "capacitor.Cbank.value", "V / sqrt(2)", "box examined"):
         assert word in text
 
 
