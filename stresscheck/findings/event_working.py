@@ -20,6 +20,11 @@ WORDS = {
 }
 
 
+FIRST = {
+    "switch-on": "the drives come on, at the worst phase",
+    "switch-off": "the drives go to zero, at the worst phase",
+    "change": "of the change, at the worst phase",
+}
 NO_MORE = 1e-4
 """An event that goes above the steady state by less than this, relative, only approaches it."""
 BOUND = {
@@ -34,6 +39,8 @@ def when(seconds: float, event: str, before: str, stress: float, steady: float) 
     start = f" from state {before}" if before else ""
     if event != "switch-off" and stress <= steady * (1.0 + NO_MORE):
         return f"no more than in the steady state that follows{start and ', coming' + start}"
+    if seconds <= 0.0:
+        return f"at the instant {FIRST[event]}{start}"
     return f"{in_words(seconds)} {WORDS[event]}{start}"
 
 

@@ -19,7 +19,7 @@ from stresscheck.search.climb import Peaks, climb, merge
 from stresscheck.search.prove import Bounds, Goal, prove
 from stresscheck.search.ridge import along_ridges, gained
 from stresscheck.stress.course_bounds import Settled, settled
-from stresscheck.stress.energy import CIRCUIT
+from stresscheck.stress.energy import CIRCUIT, QUANTITY
 from stresscheck.stress.needs import needs_of
 from stresscheck.stress.sizes import sizes_at, sizes_over
 from stresscheck.stress.stresses import PartNotes, stresses
@@ -82,6 +82,7 @@ class Problem:
     box: Box = field(init=False)
     too_many: bool = False
     known: Settled | None = None
+    carriers: Indices | None = None
 
     def __post_init__(self) -> None:
         axes = self.network.axes
@@ -151,6 +152,11 @@ class Problem:
 
     def outputs(self) -> Indices:
         """For each asked function the response that carries it, in the order of the tableau's readings."""
+        if self.carriers is None:
+            self.carriers = self._carriers()
+        return self.carriers
+
+    def _carriers(self) -> Indices:
         count = len(self.network.branches)
         out = []
         for ask in self.asked:
@@ -182,7 +188,7 @@ class Problem:
         coupled = any(branch in (c.first, c.second) for c in network.couplings)
         if branch is not None:
             tries = [stationary_values(network, line, points, axis, outputs) for line in network.lines if line.weighty]
-        direct = [ask.quantity.startswith(("voltage", "current")) for ask in self.asked]
+        direct = [ask.quantity.startswith(("voltage", "current", QUANTITY)) for ask in self.asked]
         if branch is None or coupled or not np.array(direct)[target].all():
             width = self.box.high[axis] - self.box.low[axis]
             steps = width * 0.25 ** np.arange(1, PATTERN + 1)

@@ -50,9 +50,26 @@ def share(finding: Finding) -> float | None:
 
 
 def closest(findings: Iterable[Finding]) -> Finding | None:
-    """The finding that uses most of its limit, accepted ones left out; None where no finding has a limit."""
+    """The finding that uses most of its limit, accepted ones left out; None where no finding has a limit.
+
+    An event that only comes up to the steady state stands behind it.
+    """
     ranked = [f for f in findings if f.ratio is not None and not f.accepted]
-    return max(ranked, key=lambda f: share(f) or 0.0, default=None)
+    return max(ranked, key=lambda f: (share(f) or 0.0) * (1.0 if f.event == "steady" else 1.0 - NO_MORE), default=None)
+
+
+NO_MORE = 1e-3
+"""An event that exceeds the steady figure by less than this, relative, isn't told in full beside it."""
+
+
+def adds_nothing(event: Finding, steady: Finding) -> bool:
+    """Does an event only come up to a steady figure of the same part, quantity and state, with the same verdict?"""
+    same = (event.part, event.quantity, event.state, event.verdict) == (
+        steady.part, steady.quantity, steady.state, steady.verdict,
+    )  # fmt: skip
+    if not same or event.event == "steady" or steady.event != "steady":
+        return False
+    return event.worst is not None and steady.worst is not None and event.worst <= steady.worst * (1.0 + NO_MORE)
 
 
 def share_of_bound(finding: Finding) -> float | None:

@@ -83,9 +83,13 @@ def _attention(out: Lines, review: Review) -> None:
         if found:
             out.add()
             out.add(f"{verdict} ({len(found)})", tone="open")
+        beside = {event.id for event in found for steady in found if figures.adds_nothing(event, steady)}
         for finding in found:
+            if finding.id in beside:
+                continue
             if verdict != "not-checked" or finding.worst is not None:
                 _in_full(out, finding)
+                _beside(out, [e for e in found if e.id in beside and figures.adds_nothing(e, finding)])
         if verdict == "not-checked":
             _grouped(out, [f for f in found if f.worst is None])
     accepted = [f for f in review.findings if f.accepted]
@@ -94,6 +98,13 @@ def _attention(out: Lines, review: Review) -> None:
         out.add(f"accepted ({len(accepted)}), not counted", tone="open")
         for finding in accepted:
             _in_full(out, finding)
+
+
+def _beside(out: Lines, events: list[Finding]) -> None:
+    """Events that only come up to the steady figure: one line each, under it."""
+    for event in events:
+        worst = figures.stress(event.worst, event.unit)
+        out.add(f"{event.id}: worst {worst}; {_figures(event)}", indent=4, hang=2)
 
 
 def _grouped(out: Lines, found: list[Finding]) -> None:
