@@ -47,7 +47,7 @@ def with_harmonics(network: Network) -> Network:
         orders, heavy, rest = _orders(network, base, points)
         left_out = max(left_out, rest)
         for order in orders:
-            line = _line(network, base, order, order in heavy)
+            line = _line(network, base, order, order in heavy or order == orders[0])
             for index in line.sources:
                 home.setdefault(index, len(lines))
             lines.append(line)

@@ -135,6 +135,14 @@ class Network:
         """Bands [Hz] of the lines that carry a noticeable part of some stress."""
         return [self.band_of(line) for line in self.lines if line.weighty]
 
+    def leading(self, most: int) -> tuple[Line, ...]:
+        """The lowest weighty lines of each frequency, at most so many of each: those that may meet a resonance."""
+        return tuple(
+            line
+            for course in self.courses()
+            for line in [self.lines[n] for n in course if self.lines[n].weighty][:most]
+        )
+
     def courses(self) -> tuple[tuple[int, ...], ...]:
         """Numbers of the lines that belong to one frequency: fundamentals with their harmonics."""
         homes: dict[int, list[int]] = {}

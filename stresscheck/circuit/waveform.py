@@ -118,7 +118,9 @@ class Waveform:
             return math.inf
         top = max(orders, default=0)
         n = np.arange(top + 1, FAR + 1)
-        size = np.array([abs(self.weight(int(k))) for k in n]) if self.kind == "square" else 8.0 / (np.pi * n) ** 2
+        size = 4.0 / (np.pi * n) * np.abs(np.sin(np.pi * n * self.duty))
+        if self.kind == "triangle":
+            size = np.where(n % 2 == 1, 8.0 / (np.pi * n) ** 2, 0.0)
         factor = 4.0 / math.pi if self.kind == "square" else 8.0 / math.pi**2
         beyond = factor * FAR ** (1 - power) / (power - 1)
         return float((size / n.astype(np.float64) ** fall).sum() + beyond)

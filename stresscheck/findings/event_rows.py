@@ -11,6 +11,7 @@ from stresscheck.circuit.laws import CapacitorLaw
 from stresscheck.circuit.network import Network
 from stresscheck.findings.assemble import Steady
 from stresscheck.findings.checks import Check
+from stresscheck.stress.sizes import only_sines
 
 PEAKS = ("voltage_peak", "current_peak", "slew_rate", "flux_density")
 """Quantities whose ratings a moment can exceed."""
@@ -80,4 +81,4 @@ def points_of(network: Network, steady: Steady, rows: list[Row]) -> Floats:
     for point in points:
         if np.isfinite(point).all() and not any(np.allclose(point, other, rtol=1e-4, atol=0.0) for other in kept):
             kept.append(point)
-    return np.array(kept[:MOST_POINTS])
+    return np.array(kept[: MOST_POINTS if only_sines(network) else MOST_POINTS // 2])

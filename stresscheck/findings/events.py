@@ -108,6 +108,8 @@ def _look(
                 factors = [factor_of(network, steady, row.check, point, largest_value=False) for row in rows]
                 bound = np.fmin(bound, result.ceiling * factors * (1.0 + 1e-9))
         seen.bound = np.maximum(seen.bound, bound)
+    # A square's harmonics are cut off: what is found may lie above the exact bound by a part of what they leave out.
+    seen.bound = np.maximum(seen.bound, seen.value)
     return seen
 
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from itertools import product
 
 import numpy as np
@@ -21,7 +21,7 @@ from stresscheck.search.ridge import along_ridges, gained
 from stresscheck.stress.course_bounds import Settled, settled
 from stresscheck.stress.energy import CIRCUIT, QUANTITY
 from stresscheck.stress.needs import needs_of
-from stresscheck.stress.sizes import sizes_at, sizes_over
+from stresscheck.stress.sizes import only_sines, sizes_at, sizes_over
 from stresscheck.stress.stresses import PartNotes, stresses
 
 ZERO = 1e-9
@@ -30,6 +30,8 @@ BATCH_CORNERS = 6144
 """Corners handled together: few enough for the cache, enough to pay for the calls."""
 MOST_NUMBERS = 4_000_000
 """Numbers of all matrices of a block of points."""
+LEADING = 4
+"""Harmonics of each frequency that may be tuned to a resonance when starts are chosen."""
 RIDGE_ROUNDS = 6
 PATTERN = 12
 """Scales of the steps tried on axes without a closed form, each a quarter of the one before."""
@@ -83,6 +85,7 @@ class Problem:
     too_many: bool = False
     known: Settled | None = None
     carriers: Indices | None = None
+    rough: bool = False
 
     def __post_init__(self) -> None:
         axes = self.network.axes
@@ -103,7 +106,7 @@ class Problem:
         return np.concatenate([self._values(points[i : i + block]) for i in range(0, len(points), block)])
 
     def _values(self, points: Floats) -> Floats:
-        sizes = sizes_at(self.network, points)
+        sizes = sizes_at(self.network, points, rough=self.rough)
         found = stresses(self.network, self.notes, sizes)
         columns = []
         for ask in self.asked:
@@ -187,7 +190,7 @@ class Problem:
         tries = []
         coupled = any(branch in (c.first, c.second) for c in network.couplings)
         if branch is not None:
-            tries = [stationary_values(network, line, points, axis, outputs) for line in network.lines if line.weighty]
+            tries = [stationary_values(network, line, points, axis, outputs) for line in network.leading(LEADING)]
         direct = [ask.quantity.startswith(("voltage", "current", QUANTITY)) for ask in self.asked]
         if branch is None or coupled or not np.array(direct)[target].all():
             width = self.box.high[axis] - self.box.low[axis]
@@ -220,14 +223,12 @@ class Problem:
         corners = np.concatenate([self.box.nominal[None], corner_points(self.box)])
         out = [corners]
         for axis in reactive_axes(self.network):
-            for line in self.network.lines:
-                if not line.weighty:
-                    continue
+            for line in self.network.leading(LEADING):
                 tuned = corners.copy()
                 value = tuned_values(self.network, line, corners, axis)
                 tuned[:, axis] = np.where(np.isfinite(value), value, corners[:, axis])
                 out.append(tuned)
-        bands = [(ln.frequency_axis, ln.order) for ln in self.network.lines if self.network.band(ln) and ln.weighty]
+        bands = [(ln.frequency_axis, ln.order) for ln in self.network.leading(LEADING) if self.network.band(ln)]
         if bands:
             modes = mode_hertz(self.network, corners)
             for column, order in product(range(modes.shape[1]), sorted({order for _, order in bands})):
@@ -253,6 +254,21 @@ def _find(problem: Problem, stop: Callable[[], bool]) -> Peaks:
     return peaks
 
 
+def _found(problem: Problem, stop: Callable[[], bool]) -> Peaks:
+    """The largest values found; where courses have harmonics the search adds the peaks of the leading ones, and the
+    courses themselves are put together at the points that it ends at."""
+    if only_sines(problem.network):
+        return _find(problem, stop)
+    few = replace(problem.network, lines=problem.network.leading(LEADING))
+    rough = _find(Problem(few, problem.notes, problem.asked, rough=True), stop)
+    points = np.unique(
+        np.concatenate([problem.box.nominal[None], rough.point[np.isfinite(rough.point).all(axis=1)]]), axis=0
+    )
+    values = problem.values(points)
+    row = np.where(np.isfinite(values), values, -np.inf).argmax(axis=0)
+    return Peaks(values[row, np.arange(values.shape[1])], points[row])
+
+
 def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool], bool]) -> Worst:
     """Find and bound every asked function of a problem.
 
@@ -261,7 +277,7 @@ def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool
     """
     nominal = problem.values(problem.box.nominal[None])[0]
     corners = _largest(problem.values(corner_points(problem.box)))
-    peaks = _find(problem, lambda: stop(False))
+    peaks = _found(problem, lambda: stop(False))
     if not problem.box.varying:
         peaks = Peaks(nominal, np.repeat(problem.box.nominal[None], len(nominal), axis=0))
         return Worst(nominal, peaks, corners, Bounds(nominal.copy(), 1, False), _floor(problem, nominal))
@@ -274,7 +290,9 @@ def worst_case(problem: Problem, gap: float, limit: Floats, stop: Callable[[bool
         seen = Peaks(values[row, np.arange(values.shape[1])], points[row])
         best = state["peaks"].value
         better = seen.value - best > 1e-9 * np.abs(best)
-        if better.any():
+        if better.any() and not only_sines(problem.network):
+            state["peaks"] = merge(state["peaks"], seen)
+        elif better.any():
             again = climb(problem.box, problem.values, problem.candidates, seen.point[better])
             state["peaks"] = merge(merge(state["peaks"], seen), again)
         return state["peaks"].value

@@ -174,7 +174,8 @@ def bounded_rests(network: Network, found: CourseBounds, highs: Floats) -> list[
         for index, branch in enumerate(network.branches):
             value = highs[:, branch.axis] if branch.axis is not None else np.full(len(highs), branch.fixed)
             ohm[:, index] = branch.law.ohm(value, omega).real
-        out.append(np.sqrt(ohm) * rest.ampere)
+        with np.errstate(invalid="ignore"):
+            out.append(np.where(ohm == 0.0, 0.0, np.sqrt(ohm) * rest.ampere))
     return out
 
 

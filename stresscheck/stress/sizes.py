@@ -92,8 +92,11 @@ def _endless(network: Network, line: Line) -> bool:
     return any(network.sources[s].waveform.endless for s in line.sources)
 
 
-def sizes_at(network: Network, points: Floats) -> Sizes:
-    """Exact sizes at points [points, axes]; NaN where a point can't be solved."""
+def sizes_at(network: Network, points: Floats, *, rough: bool = False) -> Sizes:
+    """Exact sizes at points [points, axes]; NaN where a point can't be solved.
+
+    rough: extremes over time are the sums of the lines' peaks, at most a little too large and far quicker.
+    """
     lines = [phasors(network, points, line) for line in network.lines]
     omega = np.stack([p.omega for p in lines])
     still = direct(network, points)
@@ -111,11 +114,20 @@ def sizes_at(network: Network, points: Floats) -> Sizes:
         terminal.append(rest.terminal)
         watt.append(np.sqrt(np.abs(lines[course[-1]].ohm.real)) * rest.ampere)
         var.append(np.zeros_like(rest.ampere))
-    high, low = extremes(network, lines, flow, points)
+    high, low = _added(lines, flow) if rough else extremes(network, lines, flow, points)
     return Sizes(
         np.stack(volt), np.stack(ampere), np.stack(watt), np.stack(var), np.stack(node), np.stack(terminal),
         groups_of(network), high, low, _watt_at(network, lines, flow, still), (omega, omega), (points, points), still, only_sines(network),
     )  # fmt: skip
+
+
+def _added(lines: list[Phasors], flow: Complexes) -> tuple[Floats, Floats]:
+    """Sum of the peaks of all lines, for either sign."""
+    total = np.sum(
+        [np.abs(np.concatenate([p.ampere, p.volt, p.node, f], axis=1)) for p, f in zip(lines, flow, strict=True)],
+        axis=0,
+    )
+    return total, total
 
 
 def _watt_at(network: Network, lines: list[Phasors], flow: Complexes, still: Direct) -> Floats:

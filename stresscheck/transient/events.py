@@ -74,6 +74,7 @@ def happening(new: Stage, before: Carried) -> Happening:
     seen: set[tuple[float, int]] = set()
     for course in network.courses() if new.running else ():
         harmonics = []
+        course = _telling(network, course)
         for number in course:
             line = network.lines[number]
             key = (float(point[line.frequency_axis]), line.order)
@@ -98,6 +99,14 @@ def happening(new: Stage, before: Carried) -> Happening:
     swings += [Swing(tuple(parts), 2.0 * np.pi * hertz) for hertz, parts in lost.items()]
     direct, surge = _direct(new, before)
     return Happening(tuple(swings), direct, unlimited | surge)
+
+
+def _telling(network: Network, course: tuple[int, ...]) -> tuple[int, ...]:
+    """Lines of a course that are followed in time: of endless harmonics those that carry a noticeable part of some
+    stress; the others pass at once, with what has no line."""
+    if not any(network.sources[s].waveform.endless for n in course for s in network.lines[n].sources):
+        return course
+    return tuple(n for n in course if network.lines[n].weighty) or course
 
 
 def _free(new: Stage, held: Complexes, size: Floats) -> tuple[Complexes, Flags]:

@@ -10,6 +10,7 @@ import scipy.linalg
 from node_circuits import NodeCircuit, random_nodes
 
 from stresscheck.chain import review
+from stresscheck.circuit.waveform import Waveform
 from stresscheck.design.load import read_design
 
 POINTS = 1600
@@ -175,3 +176,31 @@ rating = { voltage_peak = "90 V", dissipation = "900 W" }
     assert found["R.voltage_peak@normal"].worst == pytest.approx(2.0, rel=1e-6)
     assert found["R.dissipation@normal"].worst == pytest.approx(4.0, rel=2e-3)
     assert found["A.current_peak@normal"].worst == pytest.approx(2.0, rel=1e-6)
+
+
+def test_amplitudes_of_a_square_wave() -> None:
+    """O52: 1.27324, 0.424413, 0.254648, 0.181891, 0.141471 for n = 1, 3, 5, 7, 9; nothing between."""
+    square = Waveform("square")
+    printed = {1: 1.27324, 3: 0.424413, 5: 0.254648, 7: 0.181891, 9: 0.141471}
+    assert all(abs(square.weight(n)) == pytest.approx(size, abs=6e-6) for n, size in printed.items())
+    assert square.orders(9) == tuple(printed)
+
+
+@pytest.mark.parametrize("form", [Waveform("square"), Waveform("square", 0.2), Waveform("triangle")])
+def test_what_harmonics_leave_out_is_what_a_long_sum_adds(form: Waveform) -> None:
+    """Rest, its integral, its RMS and the bounds of its sums, against the harmonics themselves to order 6000."""
+    orders = form.orders(7)
+    angle = np.linspace(-3.0, 3.0, 41)
+    more = [n for n in form.orders(6000) if n not in orders]
+    weight = np.array([form.weight(n).real for n in more])
+    n = np.array(more)
+    rest = (weight[:, None] * np.cos(n[:, None] * angle)).sum(axis=0)
+    integral = (weight[:, None] / n[:, None] * np.sin(n[:, None] * angle)).sum(axis=0)
+    away = np.abs(np.abs(angle) - np.pi * form.duty) > 0.05
+    assert form.rest(angle, orders)[away] == pytest.approx(rest[away], abs=6e-3)
+    assert form.rest_integral(angle, orders) == pytest.approx(integral, abs=1e-6)
+    assert form.rest_rms(orders) == pytest.approx(np.sqrt(0.5 * (weight**2).sum()), rel=3e-3)
+    for fall in (0, 1):
+        if not (fall == 0 and form.kind == "square"):
+            total = (np.abs(weight) / n**fall).sum()
+            assert total <= form.rest_sum(orders, fall) <= 1.02 * total + 1e-4
