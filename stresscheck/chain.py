@@ -32,6 +32,8 @@ ASSUMPTIONS = (
     "Events: switch-on from rest and switch-off of all drives at once, and changes from normal and back to it; peak "
     "ratings only. A drive that is off is zero volt behind its resistance, or zero ampere; interrupting its current, "
     "arcs and bouncing contacts aren't covered.",
+    "Windings are copper: declared resistances and Qs hold at 20 degC; where an ambient is declared, voltages and currents "
+    "are those of the coldest winding and heat is that of the winding at its own temperature.",
     "Every part is linear; losses and values are those declared; wiring and stray coupling only as declared.",
     "Worst case over declared tolerances, ranges and bands, taken as independent of each other.",
     "Peaks of drives at different frequencies, or without stated phase, are added.",

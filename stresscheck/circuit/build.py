@@ -3,18 +3,21 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
 from stresscheck.circuit.axes import Axes, Axis
 from stresscheck.circuit.curves import LossCurve
+from stresscheck.circuit.drift import drift_factors
 from stresscheck.circuit.harmonics import with_harmonics
 from stresscheck.circuit.joints import Joints
 from stresscheck.circuit.laws import TAU, CapacitorLaw, InductorLaw, Law, ResistorLaw
 from stresscheck.circuit.network import Branch, Coupling, Line, Network, Source, Transformer
 from stresscheck.circuit.waveform import SINE, Waveform
 from stresscheck.errors import CheckError
+from stresscheck.physics.copper import copper_resistance
 
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
@@ -22,25 +25,32 @@ if TYPE_CHECKING:
 LEVEL_SCALE = {"peak": 1.0, "rms": math.sqrt(2.0), "peak_to_peak": 0.5}
 
 
-def build(design: Design) -> Network:
+def build(design: Design, warm: Mapping[str, float] | None = None) -> Network:
     """Number the nodes, make every present part a set of branches, sort drives into spectral lines.
+
+    warm: upper temperature [K] of parts that heat themselves; the hottest ambient for all others. Values with a
+    temperature coefficient drift over what that leaves, down to the coldest ambient.
 
     Opened parts are left out, shorted ones join their nodes. An island without a reference gets one of its nodes
     as reference: no current flows through that, and stresses of parts don't depend on the choice.
     Raises CheckError where a loss isn't stated over the whole band of a drive.
     """
-    return _Builder(design).network()
+    return _Builder(design, warm or {}).network()
 
 
 class _Builder:
     """Collects axes and branches in reading order; lives only inside `build`."""
 
-    def __init__(self, design: Design) -> None:
+    def __init__(self, design: Design, warm: Mapping[str, float]) -> None:
         self.design = design
+        self.warm = warm
         self.absent = design.opened | design.shorted
         self.joints = Joints(design)
         self.axes: list[Axis] = []
         self.branches: list[Branch] = []
+        # Declared losses of windings hold at 20 degC; the coldest copper damps least, so that is what rings.
+        self.ambient = design.site.ambient_span()
+        self.cold = 1.0 if self.ambient is None else float(copper_resistance(1.0, float(self.ambient.low)))
 
     def network(self) -> Network:
         for name, capacitor in self._present("capacitor"):
@@ -83,6 +93,19 @@ class _Builder:
         self.axes.append(Axis(path, float(span.low), float(span.nominal), float(span.high)))
         return len(self.axes) - 1
 
+    def _value(self, kind: str, name: str, part: Any) -> int:
+        """Axis of a part's value, its interval widened by its drift with temperature."""
+        axis = self._axis(f"{kind}.{name}.value", part.span())
+        if part.temperature_coefficient is not None and self.ambient is not None:
+            hottest = max(float(self.ambient.high), self.warm.get(name, 0.0))
+            try:
+                least, most = drift_factors(float(part.temperature_coefficient), float(self.ambient.low), hottest)
+            except ValueError:
+                raise CheckError(f"temperature_coefficient of {name} takes its value to zero") from None
+            item = self.axes[axis]
+            self.axes[axis] = Axis(item.path, item.low * least, item.nominal, item.high * most)
+        return axis
+
     def _branch(self, part: str, role: str, nodes: tuple[int, int], law: Law, fixed: float) -> None:
         self.branches.append(Branch(part, role, nodes[0], nodes[1], law, None, fixed))
 
@@ -92,7 +115,7 @@ class _Builder:
         scale = parallel / series
         factor = 1.0 / part.q if part.q is not None else part.dissipation_factor
         law = CapacitorLaw(_curve(f"dissipation_factor of {name}", factor), _curve(f"esr of {name}", part.esr), scale)
-        axis = self._axis(f"capacitor.{name}.value", part.span())
+        axis = self._value("capacitor", name, part)
         inductance = part.series_inductance
         if inductance is None and part.self_resonance is not None:
             inductance = 1.0 / ((TAU * part.self_resonance) ** 2 * self.axes[axis].nominal)
@@ -109,8 +132,8 @@ class _Builder:
     def _inductor(self, name: str, part: Any) -> None:
         first, second = self.joints.pair(part.between)
         kappa = TAU * part.q_at / part.q if part.q is not None else 0.0
-        law = InductorLaw(_curve(f"resistance of {name}", part.resistance), kappa)
-        axis = self._axis(f"inductor.{name}.value", part.span())
+        law = InductorLaw(_curve(f"resistance of {name}", part.resistance, self.cold), self.cold * kappa)
+        axis = self._value("inductor", name, part)
         self.branches.append(Branch(name, "main", first, second, law, axis))
         capacitance = part.parallel_capacitance
         if capacitance is None and part.self_resonance is not None:
@@ -129,7 +152,7 @@ class _Builder:
             inner = self.joints.inner(f"{name} (inside)")
             coil = InductorLaw(_curve("", None))
             self._branch(name, "series_inductance", (inner, second), coil, float(part.series_inductance) * scale)
-        axis = self._axis(f"resistor.{name}.value", part.span())
+        axis = self._value("resistor", name, part)
         self.branches.append(Branch(name, "main", first, inner, ResistorLaw(scale), axis))
 
     def _couplings(self) -> tuple[Coupling, ...]:
@@ -223,12 +246,12 @@ def _groups(bands: list[Any]) -> list[int]:
     return group
 
 
-def _curve(owner: str, declared: Any) -> LossCurve:
-    """Loss as declared: nothing, one number, or a curve over frequency."""
+def _curve(owner: str, declared: Any, factor: float = 1.0) -> LossCurve:
+    """Loss as declared, times a factor: nothing, one number, or a curve over frequency."""
     if declared is None:
         return LossCurve(owner, None, np.zeros(1))
     if isinstance(declared, (int, float)):
-        return LossCurve(owner, None, np.array([float(declared)]))
+        return LossCurve(owner, None, np.array([factor * float(declared)]))
     hertz = np.array([float(x) for x, _ in declared.points])
-    value = np.array([float(y) for _, y in declared.points])
+    value = np.array([factor * float(y) for _, y in declared.points])
     return LossCurve(owner, hertz, value)

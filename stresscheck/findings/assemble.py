@@ -15,6 +15,7 @@ from stresscheck.circuit.network import Network
 from stresscheck.circuit.phasors import check_levels
 from stresscheck.errors import CheckError
 from stresscheck.findings.checks import Check, checks_of, part_notes
+from stresscheck.findings.drift import drifted
 from stresscheck.findings.explain import carriers_of, reason_for, steps_for
 from stresscheck.findings.finding import Finding, Place, Proof
 from stresscheck.findings.gated import gate_of, gated_worst
@@ -23,6 +24,7 @@ from stresscheck.findings.self_resonance import remark
 from stresscheck.findings.worst import Asked, Limiting, Problem, Worst, worst_case
 from stresscheck.limits.limit import Limit
 from stresscheck.limits.policy import Policy
+from stresscheck.search.box import corner_points
 from stresscheck.stress.energy import CIRCUIT, QUANTITY
 from stresscheck.stress.stresses import PartNotes
 from stresscheck.transient.gated import Gate, check_gated
@@ -31,6 +33,7 @@ if TYPE_CHECKING:
     from stresscheck.design.model import Design
 
 Stop = Callable[[bool], bool]
+RUNAWAY = "thermal runaway: its loss grows faster with temperature than its thermal resistance carries it away"
 NOT_SET = "the voltage or current isn't set by the circuit, or no solution is vouched for"
 WARM = 300.0
 """Any temperature [K]: only asked whether knowing one makes a difference."""
@@ -87,7 +90,7 @@ def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, 
     """Search, bound and judge every check of a state. `kind`: "operating", or "fault" (full ratings)."""
     full = kind == "fault"
     try:
-        network, gate = _built(design)
+        network, gate = _built(design, gap, stop)
     except CheckError as error:
         checks = checks_of(design, policy, {}, full=full)
         none = tuple(lost(check, state, kind, str(error)) for check in checks)
@@ -115,11 +118,13 @@ def find_all(design: Design, state: str, kind: str, policy: Policy, gap: float, 
     return StateFindings(state, findings, network, seen, steady=steady)
 
 
-def _built(design: Design) -> tuple[Network, Gate | None]:
-    """The network of a state and its gating; CheckError where it can't be solved."""
+def _built(design: Design, gap: float, stop: Stop) -> tuple[Network, Gate | None]:
+    """The network of a state, its values drifting with temperature, and its gating; CheckError where it can't be
+    solved."""
     network = build(design)
     check_levels(network)
     _check_solvable(network)
+    network = drifted(design, network, gap, stop)
     gate = gate_of(design, network)
     if gate is not None:
         check_gated(network)
@@ -243,9 +248,11 @@ def _finding(
         return lost(check, state, kind, check.obstacle)
     use = plan.use[index]
     point = worst.peaks.point[use if use >= 0 else column]
+    problem = Problem(network, part_notes(design), [Asked(check.part, check.quantity)])
+    if check.kind == "inductor" and check.quantity in ("dissipation", "temperature") and _runs_away(problem):
+        return lost(check, state, kind, RUNAWAY)
     if not np.isfinite(worst.peaks.value[column]):
         return lost(check, state, kind, NOT_SET)
-    problem = Problem(network, part_notes(design), [Asked(check.part, check.quantity)])
     gated = gate_of(design, network) is not None
     if gated:
         point, stress = worst.peaks.point[column], float(worst.peaks.value[column])
@@ -259,12 +266,7 @@ def _finding(
     limit = result.limit
     place = Place(hertz, tuple((a.path, float(v)) for a, v in zip(network.axes.items, point, strict=True)))
     dead = stress <= float(worst.noise[column])
-    proof = Proof(
-        worst.bounds.boxes,
-        None if bound is None or dead else max(0.0, float(bound) / stress - 1.0),
-        _method(network, worst),
-        float(worst.corners[column]) if math.isfinite(worst.corners[column]) else None,
-    )
+    proof = _proof(network, worst, column, None if bound is None or dead else max(0.0, float(bound) / stress - 1.0))
     return Finding(
         id=check.id(state), state=state, state_kind=kind, event=check.event,
         part=check.part, kind=check.kind, quantity=check.quantity, unit=check.unit, verdict=result.verdict,
@@ -278,6 +280,17 @@ def _finding(
         why=result.why, ratio_bound=bound_use, proof=proof, reason="" if dead else reason_for(network, check, point),
         remarks=_remarks(design, network, check, point) if not dead else (),
     )  # fmt: skip
+
+
+def _proof(network: Network, worst: Worst, column: int, gap: float | None) -> Proof:
+    corners = float(worst.corners[column]) if math.isfinite(worst.corners[column]) else None
+    return Proof(worst.bounds.boxes, gap, _method(network, worst), corners)
+
+
+def _runs_away(problem: Problem) -> bool:
+    """Does the heat of a winding not settle somewhere at the corners of the box or in its middle?"""
+    points = np.concatenate([problem.box.nominal[None], corner_points(problem.box)])
+    return bool(np.isposinf(problem.values(points)).any())
 
 
 def _remarks(design: Design, network: Network, check: Check, point: Floats) -> tuple[str, ...]:

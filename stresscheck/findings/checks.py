@@ -13,6 +13,7 @@ from stresscheck.limits.policy import Policy
 from stresscheck.limits.quantities import KINDS, quantities_of
 from stresscheck.stress.sharing import bank_share
 from stresscheck.stress.stresses import PartNotes
+from stresscheck.stress.winding_heat import Warmth
 
 if TYPE_CHECKING:
     from stresscheck.design.model import Design
@@ -39,10 +40,11 @@ def part_notes(design: Design) -> dict[str, PartNotes]:
     """What the stress functions need to know of every present part, drives included."""
     ambient = design.site.ambient_span()
     hottest = None if ambient is None else float(ambient.high)
+    coldest = None if ambient is None else float(ambient.low)
     notes: dict[str, PartNotes] = {}
     for kind in KINDS:
         for name, part in present(design, kind):
-            notes[name] = _note(kind, part, hottest)
+            notes[name] = _note(kind, part, coldest, hottest)
     return notes
 
 
@@ -52,7 +54,7 @@ def present(design: Design, kind: str) -> list[tuple[str, Any]]:
     return [(name, part) for name, part in getattr(design, kind).items() if name not in absent]
 
 
-def _note(kind: str, part: Any, ambient: float | None) -> PartNotes:
+def _note(kind: str, part: Any, coldest: float | None, ambient: float | None) -> PartNotes:
     if kind == "drive":
         return PartNotes(kind)
     rise = part.thermal_resistance
@@ -60,7 +62,8 @@ def _note(kind: str, part: Any, ambient: float | None) -> PartNotes:
     if kind == "inductor":
         turns = None if part.turns is None else float(part.turns)
         area = None if part.core_area is None else float(part.core_area)
-        return PartNotes(kind, turns=turns, core_area=area, thermal_resistance=thermal, ambient=ambient)
+        warmth = None if coldest is None or ambient is None else Warmth(coldest, ambient, thermal)
+        return PartNotes(kind, turns=turns, core_area=area, thermal_resistance=thermal, ambient=ambient, warmth=warmth)
     tolerance = part.unit_tolerance
     share = bank_share(
         part.in_series or 1,
@@ -104,8 +107,10 @@ def unavailable(design: Design) -> list[str]:
     found = []
     for kind in ("capacitor", "inductor", "resistor"):
         for name, part in present(design, kind):
-            if part.temperature_coefficient is not None:
-                found.append(f"temperature_coefficient of {name}: drift by temperature isn't computed")
+            if part.temperature_coefficient is not None and design.site.ambient_span() is None:
+                found.append(
+                    f"temperature_coefficient of {name}: site.ambient isn't declared, so its drift isn't known"
+                )
     for name, part in present(design, "inductor"):
         if part.winding is not None and part.resistance is None and part.q is None:
             found.append(f"winding of {name}: its resistance isn't computed; declare resistance or q")

@@ -142,6 +142,9 @@ def _formula(check: Check, network: Network, *, gated: bool) -> str:
         "flux_density": "L I / (N A)",
         "power": "Re(V I*) / 2",
     }
+    if check.kind == "inductor":
+        known["dissipation"] = "R I^2 / 2, R at the winding's own temperature (+ V^2/(2 R) in the core, + DC)"
+        known["temperature"] = "ambient + R_th P, P growing with it: (x_ambient + R_th P_20)/(1 - 0.00393 R_th P_20)"
     peaks = {
         "voltage_peak": "largest |V_dc + v(t)|", "voltage_peak_to_peak": "largest v(t) - smallest v(t)",
         "current_peak": "largest |I_dc + i(t)|", "slew_rate": "largest |i(t)| / C",

@@ -216,7 +216,7 @@ def read_data_file(path: Path) -> DataFile:
             raise InputError([_unreadable(name, f"more than {LARGEST_FILE} bytes")])
         text = raw.decode("utf-8")
     except (OSError, UnicodeDecodeError) as fault:
-        raise InputError([_unreadable(name, type(fault).__name__)]) from None
+        raise InputError([_unreadable(name, _in_words(fault))]) from None
     try:
         return DataFile(name, tomllib.loads(text), text)
     except (tomllib.TOMLDecodeError, RecursionError, ValueError) as fault:
@@ -238,3 +238,10 @@ def line_of(text: str, path: Sequence[str]) -> int | None:
         if found is not None:
             return found
     return None
+
+
+def _in_words(fault: OSError | UnicodeDecodeError) -> str:
+    """Why a file can't be read, without its path."""
+    if isinstance(fault, UnicodeDecodeError):
+        return "bytes that aren't UTF-8 text"
+    return (fault.strerror or type(fault).__name__).lower()

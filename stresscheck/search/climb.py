@@ -64,7 +64,8 @@ def climb(
             here, high = _move(box, evaluate, candidates, here, functions, high, axis)
         here, high = _stride(box, evaluate, left, here, functions, high)
         points[going], height[going] = here, high
-        going = going[high - before > SETTLED * np.abs(high)]
+        with np.errstate(invalid="ignore"):  # minus infinity less itself: a climber that found no value
+            going = going[high - before > SETTLED * np.abs(high)]
         if sweep in LEADERS:
             going = np.intersect1d(going, _leaders(height, target, LEADERS[sweep]))
         if not going.size or stop():

@@ -18,6 +18,7 @@ from stresscheck.stress.resistor import resistor_stress
 from stresscheck.stress.seen import PartSeen, peak, rms
 from stresscheck.stress.sharing import SINGLE, Share
 from stresscheck.stress.sizes import Sizes
+from stresscheck.stress.winding_heat import Warmth
 
 Key = tuple[str, str]
 """(part, quantity); nodes as parts named "node:NAME" with voltage_peak, voltage_rms, voltage_dc; the whole network as
@@ -28,7 +29,8 @@ Key = tuple[str, str]
 class PartNotes:
     """What the stress functions need of a part besides its branches.
 
-    `share`: the worst unit's share in a bank; `thermal_resistance` [K/W] and `ambient` [K], None where not declared.
+    `share`: the worst unit's share in a bank; `thermal_resistance` [K/W] and `ambient` [K], None where not declared;
+    `warmth`: surroundings of a winding.
     """
 
     kind: str
@@ -37,6 +39,7 @@ class PartNotes:
     core_area: float | None = None
     thermal_resistance: float | None = None
     ambient: float | None = None
+    warmth: Warmth | None = None
 
 
 def stresses(network: Network, notes: Mapping[str, PartNotes], sizes: Sizes) -> dict[Key, Floats]:
@@ -52,7 +55,7 @@ def stresses(network: Network, notes: Mapping[str, PartNotes], sizes: Sizes) -> 
     for name, note in notes.items():
         drive = note.kind == "drive"
         found = _drive(network, name, sizes) if drive else _part(network, note, places[name], sizes, groups)
-        if note.thermal_resistance is not None and note.ambient is not None:
+        if note.thermal_resistance is not None and note.ambient is not None and "temperature" not in found:
             found["temperature"] = note.ambient + note.thermal_resistance * found["dissipation"]
         out.update({(name, quantity): value for quantity, value in found.items()})
     for index, node in enumerate(network.nodes):
@@ -82,7 +85,7 @@ def _part(
     if note.kind == "capacitor":
         return capacitor_stress(seen, note.share)
     if note.kind == "inductor":
-        return inductor_stress(seen, note.turns, note.core_area)
+        return inductor_stress(seen, note.turns, note.core_area, note.warmth)
     return resistor_stress(seen, note.share)
 
 

@@ -107,7 +107,7 @@ def test_start_writes_a_file_that_is_ready_and_never_overwrites(
 
 def test_resonances_library_and_schema_answer(capsys: pytest.CaptureFixture[str]) -> None:
     assert guarded(["resonances", READY]) == 0
-    assert "87.54 kHz" in capsys.readouterr().out
+    assert "87.55 kHz" in capsys.readouterr().out
     for shelf in ("policies", "parts", "thresholds", "families"):
         assert guarded(["library", shelf]) == 0
         assert len(capsys.readouterr().out) > 200
