@@ -16,6 +16,7 @@ from stresscheck.circuit.joints import Joints
 from stresscheck.circuit.laws import TAU, CapacitorLaw, InductorLaw, Law, ResistorLaw
 from stresscheck.circuit.network import Branch, Coupling, Line, Network, Source, Transformer
 from stresscheck.circuit.waveform import SINE, Waveform
+from stresscheck.circuit.winding_loss import missing_for_winding, winding_curve
 from stresscheck.errors import CheckError
 from stresscheck.physics.copper import copper_resistance
 
@@ -132,7 +133,10 @@ class _Builder:
     def _inductor(self, name: str, part: Any) -> None:
         first, second = self.joints.pair(part.between)
         kappa = TAU * part.q_at / part.q if part.q is not None else 0.0
-        law = InductorLaw(_curve(f"resistance of {name}", part.resistance, self.cold), self.cold * kappa)
+        owner = f"resistance of {name}"
+        computed = part.winding is not None and not missing_for_winding(part)
+        curve = winding_curve(owner, part, self.cold) if computed else _curve(owner, part.resistance, self.cold)
+        law = InductorLaw(curve, self.cold * kappa)
         axis = self._value("inductor", name, part)
         self.branches.append(Branch(name, "main", first, second, law, axis))
         capacitance = part.parallel_capacitance

@@ -20,6 +20,8 @@ class LossCurve:
     owner: str
     hertz: Floats | None
     value: Floats
+    dc: float | None = None
+    """Value at direct current where the curve moves, None where it says nothing there."""
 
     def check_band(self, low: float, high: float) -> None:
         """Raise CheckError where the curve says nothing about part of [low, high] Hz.

@@ -123,7 +123,7 @@ class InductorLaw:
     def dc_ohm(self, value: Floats) -> Floats | None:
         """Resistance at omega = 0; NaN where only a curve is declared, for it is silent there."""
         if not self.resistance.constant:
-            return np.full_like(value, np.nan)
+            return np.full_like(value, np.nan if self.resistance.dc is None else self.resistance.dc)
         return np.asarray(self.resistance.value[0] + self.kappa * value)
 
     def check_band(self, low: float, high: float) -> None:

@@ -126,7 +126,7 @@ class Capacitor(Valued):
 
 
 class Winding(Table):
-    """How an inductor is wound: solid wire, or strands of litz; read and checked, its losses follow later."""
+    """How an inductor is wound: solid wire, or strands of litz."""
 
     wire_diameter: f.quantity("metre") | None = None
     strands: f.count(2, 100000, "strands") | None = None

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
+from stresscheck.circuit.winding_loss import missing_for_winding
 from stresscheck.findings.self_resonance import refusal
 from stresscheck.limits.families import load_families
 from stresscheck.limits.part_limits import PartLimits, limits_for
@@ -112,8 +113,9 @@ def unavailable(design: Design) -> list[str]:
                     f"temperature_coefficient of {name}: site.ambient isn't declared, so its drift isn't known"
                 )
     for name, part in present(design, "inductor"):
-        if part.winding is not None and part.resistance is None and part.q is None:
-            found.append(f"winding of {name}: its resistance isn't computed; declare resistance or q")
+        if part.winding is not None and missing_for_winding(part):
+            keys = ", ".join(missing_for_winding(part))
+            found.append(f"winding of {name}: its resistance needs {keys}; declare that, or resistance or q instead")
     return found
 
 
@@ -133,6 +135,11 @@ def _obstacle(design: Design, kind: str, name: str, part: Any, quantity: str) ->
     if heat and kind == "capacitor" and part.dissipation_factor is None and part.esr is None and part.q is None:
         return f"no loss of {name} is declared (dissipation_factor, esr or q)"
     if heat and kind == "inductor":
+        if part.winding is not None:
+            return (
+                f"the heat of {name}: what its turns and layers cause in each other comes on top of the skin effect "
+                "and isn't computed; declare resistance or q for it"
+            )
         if part.resistance is None and part.q is None:
             return f"no loss of {name} is declared (resistance or q)"
         if part.core is not None:
