@@ -22,6 +22,7 @@ from stresscheck.findings.gated import gate_of, gated_worst
 from stresscheck.findings.judge import judge
 from stresscheck.findings.self_resonance import remark
 from stresscheck.findings.worst import Asked, Limiting, Problem, Worst, worst_case
+from stresscheck.findings.zones import zone_remark
 from stresscheck.limits.limit import Limit
 from stresscheck.limits.policy import Policy
 from stresscheck.search.box import corner_points
@@ -294,9 +295,13 @@ def _runs_away(problem: Problem) -> bool:
 
 
 def _remarks(design: Design, network: Network, check: Check, point: Floats) -> tuple[str, ...]:
-    """Which parts carry the resonance, and a word where a part is driven near its own."""
+    """Which parts carry the resonance, a word where a part is driven near its own, and which rating binds."""
     near = remark(design, check.kind, check.part, design.part(check.part))
-    return carriers_of(network, point) + ((near,) if near else ())
+    told = carriers_of(network, point) + ((near,) if near else ())
+    if check.kind == "capacitor" and check.quantity == "voltage_rms":
+        zone = zone_remark(network, check.part, design.part(check.part), point)
+        told += (zone,) if zone else ()
+    return told
 
 
 def _bound_use(worst: Worst, plan: _Plan, index: int, use: int, column: int) -> float | None:
