@@ -11,10 +11,12 @@ from stresscheck.circuit.laws import CapacitorLaw
 from stresscheck.circuit.network import Network
 from stresscheck.findings.assemble import Steady
 from stresscheck.findings.checks import Check
+from stresscheck.search.box import Box, corner_points
 from stresscheck.stress.sizes import only_sines
 
 PEAKS = ("voltage_peak", "current_peak", "slew_rate", "flux_density")
 """Quantities whose ratings a moment can exceed."""
+CORNERS, INNER, SEED = 32, 8, 29
 MOST_POINTS = 8
 """Points of the box at which an event is looked at in full."""
 
@@ -71,6 +73,16 @@ def factor_of(network: Network, steady: Steady, check: Check, values: Floats, *,
     assert note.turns is not None
     assert note.core_area is not None
     return float(high[branch.axis]) / (note.turns * note.core_area)
+
+
+def spread_points(network: Network) -> Floats:
+    """Corners and inner points of the box, seeded: where an event may be larger than at the steady state's worst."""
+    axes = network.axes
+    box = Box(axes.low, axes.nominal, axes.high)
+    if not box.varying:
+        return np.empty((0, len(axes.items)))
+    inner = np.random.default_rng(SEED).random((INNER, len(axes.items)))
+    return np.concatenate([corner_points(box, CORNERS), axes.low + (axes.high - axes.low) * inner])
 
 
 def points_of(network: Network, steady: Steady, rows: list[Row]) -> Floats:

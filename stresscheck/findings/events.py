@@ -19,15 +19,16 @@ from stresscheck.findings.any_waveform import every_waveform
 from stresscheck.findings.assemble import StateFindings, Steady, lost
 from stresscheck.findings.checks import Check
 from stresscheck.findings.event_bounds import Reaches, bounds_of
-from stresscheck.findings.event_rows import Row, factor_of, points_of, rows_of
+from stresscheck.findings.event_rows import Row, factor_of, points_of, rows_of, spread_points
 from stresscheck.findings.event_working import steps_of, when
 from stresscheck.findings.finding import Finding, Place, Proof
 from stresscheck.findings.judge import judge
+from stresscheck.stress.sizes import only_sines
 from stresscheck.transient.carried import Carried, carried
 from stresscheck.transient.events import happening, stage
 from stresscheck.transient.one_resonance import one_resonance
 from stresscheck.transient.reach import reach
-from stresscheck.transient.swing import Largest, largest
+from stresscheck.transient.swing import Happening, Largest, glance, largest
 
 
 @dataclass(slots=True)
@@ -99,10 +100,8 @@ def _look(
     )  # fmt: skip
     for before in befores:
         bound = bounds_of(event, network, steady, before, rows, limits)
-        for point in points_of(network, steady, rows):
-            new = stage(network, point, running=event != "switch-off")
-            held = Carried.nothing() if event == "switch-on" else _held(event, network, before, point)
-            result = largest(happening(new, held).only([row.response for row in rows]))
+        for point in _promising(event, network, steady, before, rows):
+            result = largest(_happening(event, network, before, point, rows))
             _keep(seen, network, steady, rows, point, result, before.state if event == "change" else "")
             if not any(axis.varies for axis in network.axes.items):
                 factors = [factor_of(network, steady, row.check, point, largest_value=False) for row in rows]
@@ -111,6 +110,53 @@ def _look(
     # A square's harmonics are cut off: what is found may lie above the exact bound by a part of what they leave out.
     seen.bound = np.maximum(seen.bound, seen.value)
     return seen
+
+
+def _happening(event: str, network: Network, before: StateFindings, point: Floats, rows: list[Row]) -> Happening:
+    """An event at a point, for the responses of the rows."""
+    new = stage(network, point, running=event != "switch-off")
+    held = Carried.nothing() if event == "switch-on" else _held(event, network, before, point)
+    return happening(new, held).only([row.response for row in rows])
+
+
+def _promising(event: str, network: Network, steady: Steady, before: StateFindings, rows: list[Row]) -> list[Floats]:
+    """Points at which an event is worked out in full: the worst of the steady state, and of points spread over the box
+    those that look largest at a glance, after a climb along each axis."""
+    known = points_of(network, steady, rows)
+    spread = spread_points(network)
+    if not only_sines(network):
+        spread = spread[::4]
+    if not len(spread):
+        return list(known)
+
+    def look(point: Floats) -> Floats:
+        seen = glance(_happening(event, network, before, point, rows))
+        return seen * [factor_of(network, steady, row.check, point, largest_value=False) for row in rows]
+
+    points = [*known, *spread]
+    values = [look(point) for point in points]
+    chosen = list(known)
+    for row in range(len(rows)):
+        best = int(np.argmax([value[row] for value in values]))
+        top = points[best]
+        if only_sines(network):
+            top = _climbed(top, float(values[best][row]), network, lambda p, r=row: float(look(p)[r]))  # type: ignore[misc]
+        if not any(np.allclose(top, other, rtol=1e-6, atol=0.0) for other in chosen):
+            chosen.append(top)
+    return chosen
+
+
+def _climbed(point: Floats, value: float, network: Network, look: Callable[[Floats], float]) -> Floats:
+    """One round of the axes: each to its ends and half way to them, as long as that looks larger."""
+    low, high = network.axes.low, network.axes.high
+    for axis in np.flatnonzero(high > low):
+        for end in (low[axis], high[axis], 0.5 * (low[axis] + point[axis]), 0.5 * (high[axis] + point[axis])):
+            trial = point.copy()
+            trial[axis] = end
+            seen = look(trial)
+            if seen > value:
+                point, value = trial, seen
+    return point
 
 
 def _keep(
