@@ -16,7 +16,7 @@ from stresscheck.stress.sizes import only_sines
 
 PEAKS = ("voltage_peak", "current_peak", "slew_rate", "flux_density")
 """Quantities whose ratings a moment can exceed."""
-CORNERS, INNER, SEED = 32, 8, 29
+CORNERS, INNER, SEED = 24, 8, 29
 MOST_POINTS = 8
 """Points of the box at which an event is looked at in full."""
 

@@ -13,7 +13,9 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from stresscheck.arrays import Floats
+from stresscheck.circuit.motion import roles_for
 from stresscheck.circuit.network import Network
+from stresscheck.circuit.roles import Roles
 from stresscheck.errors import CheckError
 from stresscheck.findings.any_waveform import every_waveform
 from stresscheck.findings.assemble import StateFindings, Steady, lost
@@ -98,10 +100,11 @@ def _look(
         np.full(count, -np.inf), np.zeros(count), np.zeros((count, len(network.axes.items))), [False] * count,
         np.full(count, -np.inf), np.full(count, -np.inf), [""] * count,
     )  # fmt: skip
+    roles = roles_for(network)
     for before in befores:
         bound = bounds_of(event, network, steady, before, rows, limits)
-        for point in _promising(event, network, steady, before, rows):
-            result = largest(_happening(event, network, before, point, rows))
+        for point in _promising(event, network, roles, steady, before, rows):
+            result = largest(_happening(event, network, roles, before, point, rows))
             _keep(seen, network, steady, rows, point, result, before.state if event == "change" else "")
             if not any(axis.varies for axis in network.axes.items):
                 factors = [factor_of(network, steady, row.check, point, largest_value=False) for row in rows]
@@ -112,14 +115,18 @@ def _look(
     return seen
 
 
-def _happening(event: str, network: Network, before: StateFindings, point: Floats, rows: list[Row]) -> Happening:
+def _happening(
+    event: str, network: Network, roles: Roles, before: StateFindings, point: Floats, rows: list[Row]
+) -> Happening:
     """An event at a point, for the responses of the rows."""
-    new = stage(network, point, running=event != "switch-off")
+    new = stage(network, point, running=event != "switch-off", roles=roles)
     held = Carried.nothing() if event == "switch-on" else _held(event, network, before, point)
     return happening(new, held).only([row.response for row in rows])
 
 
-def _promising(event: str, network: Network, steady: Steady, before: StateFindings, rows: list[Row]) -> list[Floats]:
+def _promising(
+    event: str, network: Network, roles: Roles, steady: Steady, before: StateFindings, rows: list[Row]
+) -> list[Floats]:
     """Points at which an event is worked out in full: the worst of the steady state, and of points spread over the box
     those that look largest at a glance, after a climb along each axis."""
     known = points_of(network, steady, rows)
@@ -130,7 +137,7 @@ def _promising(event: str, network: Network, steady: Steady, before: StateFindin
         return list(known)
 
     def look(point: Floats) -> Floats:
-        seen = glance(_happening(event, network, before, point, rows))
+        seen = glance(_happening(event, network, roles, before, point, rows))
         return seen * [factor_of(network, steady, row.check, point, largest_value=False) for row in rows]
 
     points = [*known, *spread]
