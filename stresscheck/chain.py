@@ -31,7 +31,8 @@ DECIDED_SHARE = 0.2
 ASSUMPTIONS = (
     "Events: switch-on from rest and switch-off of all drives at once, and changes from normal and back to it; peak "
     "ratings only. A drive that is off is zero volt behind its resistance, or zero ampere; interrupting its current, "
-    "arcs and bouncing contacts aren't covered.",
+    "arcs and bouncing contacts aren't covered. Of a gated drive its bursts stand for these events, and changes while it "
+    "runs aren't covered.",
     "Windings are copper: declared resistances and Qs hold at 20 degC; where an ambient is declared, voltages and currents "
     "are those of the coldest winding and heat is that of the winding at its own temperature.",
     "Every part is linear; losses and values are those declared; wiring and stray coupling only as declared.",

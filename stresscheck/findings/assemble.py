@@ -129,6 +129,8 @@ def _built(design: Design, gap: float, stop: Stop) -> tuple[Network, Gate | None
     gate = gate_of(design, network)
     if gate is not None:
         check_gated(network)
+        if any(design.drive[source.name].any_waveform for source in network.sources):
+            raise CheckError("any_waveform of a gated drive isn't computed; declare one of the two")
     return network, gate
 
 

@@ -61,11 +61,24 @@ def find_events(
     limits = Reaches(reach(network), one_resonance(network)) if rows else None
     out: list[Finding] = []
     for event in ("switch-on", "switch-off", "change"):
-        if limits is not None and not interrupted():
+        if limits is None or (event == "change" and not others):
+            continue
+        if interrupted():
+            out.extend(_not_reached(event, found, steady, rows))
+        else:
             out.extend(_event(event, found, network, steady, others, rows, limits))
-    if limits is not None and any_waveform and not interrupted():
-        out.extend(every_waveform(found.state, network, steady, rows, limits.one, any_waveform))
+    if limits is not None and any_waveform:
+        if interrupted():
+            out.extend(_not_reached("any-waveform", found, steady, rows))
+        else:
+            out.extend(every_waveform(found.state, network, steady, rows, limits.one, any_waveform))
     return tuple(out)
+
+
+def _not_reached(event: str, found: StateFindings, steady: Steady, rows: list[Row]) -> list[Finding]:
+    """Findings of an event that an interruption left out: said, for what isn't there would read as a pass."""
+    why = "the review was interrupted before this event was looked at"
+    return [lost(replace(row.check, event=event), found.state, steady.kind, why) for row in rows]
 
 
 def _event(

@@ -124,3 +124,21 @@ def test_bleeder_is_advised_with_value_voltage_and_power() -> None:
     told = [c for c in record.cautions if "bleeder of at most" in c.text]
     assert told
     assert all(word in told[0].text for word in ("ohm for", "takes C1 alone to", "while it is on"))
+
+
+def test_interruption_leaves_events_not_checked_instead_of_out() -> None:
+    """What isn't looked at is said: a review whose events are missing would read as a pass."""
+    text = TEXT.replace('peak = "5 V" ', 'any_waveform = true\npeak = "5 V" ', 1)
+    whole = _found(text)
+    cut = _found(text, interrupted=lambda: True)
+    assert set(cut) == set(whole)
+    events = [f for f in cut.values() if f.event != "steady"]
+    assert {f.event for f in events} == {"switch-on", "switch-off", "change", "any-waveform"}
+    assert all(f.verdict == "not-checked" and "interrupted" in f.why for f in events)
+
+
+def test_any_waveform_of_a_gated_drive_is_no_answer() -> None:
+    both = 'any_waveform = true\ngating = { on = "100 us", period = "2 ms" }\npeak = "5 V" '
+    found = _found(TEXT.replace('peak = "5 V" ', both, 1))
+    assert {f.verdict for f in found.values()} == {"not-checked"}
+    assert all("any_waveform" in f.why for f in found.values())
